@@ -1,0 +1,4 @@
+import { errorRows } from "../error-row.js";
+
+/** Errors raised by decode. */
+export const DECODE_ERRORS = errorRows({});

@@ -1,0 +1,4 @@
+import { errorRows } from "../error-row.js";
+
+/** Errors raised by store. */
+export const STORE_ERRORS = errorRows({});
