@@ -35,11 +35,8 @@ function fill(template: string, details: ErrorDetails): string {
   return template.replace(/\{(\w+)\}/g, (_, name: string) => {
     const value = Object.hasOwn(details, name) ? details[name] : "?";
     const text = Array.isArray(value) ? value.join(", ") : String(value);
-    // biome-ignore lint/suspicious/noControlCharactersInRegex: making control characters visible is the point.
-    const visible = text.replace(
-      /[\u0000-\u001f\u007f]/g,
-      (c) => `\\x${c.charCodeAt(0).toString(16).padStart(2, "0")}`,
-    );
+
+    const visible = text.replace(/\p{Cc}/gu, (c) => `\\x${c.charCodeAt(0).toString(16).padStart(2, "0")}`);
     return visible.length > LONGEST_DETAIL ? `${visible.slice(0, LONGEST_DETAIL)}…` : visible;
   });
 }
