@@ -1,1 +1,2 @@
-export {};
+export type * from "./audit-report.js";
+export type * from "./store.js";

@@ -1,1 +1,1 @@
-export {};
+export type * from "./running-service.js";
