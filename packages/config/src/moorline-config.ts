@@ -69,6 +69,8 @@ export interface KafkaSourceConfig {
   readonly deadLetterTopic: string | null;
   /** Where a partition without a stored offset starts. Default `earliest`. */
   readonly start: "earliest" | "latest";
+  /** How long after a collector's last heartbeat its partitions are given to another. Default 30 s. */
+  readonly sessionTimeoutMs: number;
 }
 
 /** NDJSON files; each is one partition, in the order given; an offset is the byte position of a line's start. */
