@@ -1,0 +1,4 @@
+/** Working compression δ of a sketch that is not told another: about 270 clusters, 140 when encoded. */
+export const DEFAULT_COMPRESSION = 200;
+export const LEAST_COMPRESSION = 100;
+export const MOST_COMPRESSION = 2000;

@@ -1,0 +1,48 @@
+import { mergeRuns } from "./exact-runs.js";
+import { collectAtoms, promoteRuns } from "./flush-atoms.js";
+import type { Kernel } from "./kernel/kernel.js";
+import { mixScale } from "./scale.js";
+import type { SketchState } from "./sketch-state.js";
+import { addToSum } from "./sum-values.js";
+
+/** Takes the sorted, finite values kernel.values[0, count) into the state. */
+export function flushSorted(state: SketchState, kernel: Kernel, count: number): void {
+  if (count === 0) return;
+  const { values } = kernel;
+  state.finite += count;
+  state.min = Math.min(state.min, values[0]!);
+  state.max = Math.max(state.max, values[count - 1]!);
+  state.sum = addToSum(state.sum, values, count);
+  state.thresholds?.countSorted(values, count);
+  state.sealed = false;
+  if (state.compressed) {
+    const left = collectAtoms(state, values, count);
+    compress(state, kernel, left, state.compression);
+    return;
+  }
+  loadEntries(state, kernel);
+  const runs = mergeRuns(kernel, state.size, count);
+  state.takeEntries(kernel.outMeans, kernel.outWeights, runs, false);
+  if (runs > state.exactLimit) leaveExact(state, kernel);
+}
+
+/** Gives up exactness: the values that repeat most become atoms, the rest clusters. */
+export function leaveExact(state: SketchState, kernel: Kernel): void {
+  state.compressed = true;
+  promoteRuns(state);
+  compress(state, kernel, 0, state.compression);
+}
+
+/** One merging pass over the entries and kernel.values[0, valueCount). Turns the direction of the next. */
+export function compress(state: SketchState, kernel: Kernel, valueCount: number, compression: number): void {
+  loadEntries(state, kernel);
+  const total = state.finite - state.atoms.count;
+  const count = kernel.mergePass(state.size, valueCount, mixScale(compression, total), state.descending);
+  state.takeEntries(kernel.outMeans, kernel.outWeights, count, state.descending);
+  state.descending = !state.descending;
+}
+
+function loadEntries(state: SketchState, kernel: Kernel): void {
+  kernel.means.set(state.means.subarray(0, state.size));
+  kernel.weights.set(state.weights.subarray(0, state.size));
+}

@@ -1,0 +1,50 @@
+import type { Kernel, PassScale } from "./kernel.js";
+import { mergePass } from "./merge-pass.js";
+
+const FIRST_CAPACITY = 1024;
+
+/** The plain TypeScript kernel: the oracle in tests, and the fallback where WebAssembly is not to be had. */
+export class TypescriptKernel implements Kernel {
+  readonly name = "typescript";
+  values = new Float64Array(FIRST_CAPACITY);
+  means = new Float64Array(FIRST_CAPACITY);
+  weights = new Float64Array(FIRST_CAPACITY);
+  outMeans = new Float64Array(FIRST_CAPACITY);
+  outWeights = new Float64Array(FIRST_CAPACITY);
+
+  reserve(valueCount: number, entryCount: number): void {
+    if (valueCount > this.values.length) this.values = new Float64Array(roundUp(valueCount));
+    const outCount = valueCount + entryCount;
+    if (outCount <= this.means.length) return;
+    const capacity = roundUp(outCount);
+    this.means = new Float64Array(capacity);
+    this.weights = new Float64Array(capacity);
+    this.outMeans = new Float64Array(capacity);
+    this.outWeights = new Float64Array(capacity);
+  }
+
+  sortValues(count: number): boolean {
+    const values = this.values.subarray(0, count).sort();
+    // Sorted, the infinities stand at the ends and NaN after them.
+    return count === 0 || (Number.isFinite(values[0]!) && Number.isFinite(values[count - 1]!));
+  }
+
+  sortEntries(count: number): void {
+    const means = this.means.slice(0, count);
+    const weights = this.weights.slice(0, count);
+    const order = Uint32Array.from({ length: count }, (_, i) => i);
+    order.sort((a, b) => means[a]! - means[b]! || a - b);
+    for (let i = 0; i < count; i++) {
+      this.means[i] = means[order[i]!]!;
+      this.weights[i] = weights[order[i]!]!;
+    }
+  }
+
+  mergePass(entryCount: number, valueCount: number, scale: PassScale, descending: boolean): number {
+    return mergePass(this, entryCount, valueCount, scale, descending);
+  }
+}
+
+function roundUp(count: number): number {
+  return 2 ** Math.ceil(Math.log2(count));
+}

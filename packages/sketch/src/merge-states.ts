@@ -1,0 +1,127 @@
+import { MAX_ATOMS } from "./atom-table.js";
+import { mergeRuns } from "./exact-runs.js";
+import { leaveExact } from "./flush.js";
+import type { Kernel } from "./kernel/kernel.js";
+import { SketchState } from "./sketch-state.js";
+
+/** States merged in one pass; more are merged in groups of this many first, so that memory stays bounded. */
+const MOST_AT_ONCE = 4096;
+
+/** Merges states in the order given; they are not changed. */
+export function mergeStates(
+  states: readonly SketchState[],
+  compression: number,
+  kernel: Kernel,
+): SketchState {
+  if (states.length > MOST_AT_ONCE) {
+    const groups: SketchState[] = [];
+    for (let at = 0; at < states.length; at += MOST_AT_ONCE) {
+      groups.push(mergeStates(states.slice(at, at + MOST_AT_ONCE), compression, kernel));
+    }
+    return mergeStates(groups, compression, kernel);
+  }
+  const merged = new SketchState(compression, null, knownAtoms(states));
+  for (const state of states) addCounts(merged, state);
+  mergeThresholds(merged, states);
+  const filled = states.filter((state) => state.finite > 0);
+  const only = filled[0];
+  if (filled.length === 1 && only !== undefined && only.compression === compression)
+    copyEntries(merged, only);
+  else mergeEntries(merged, filled, kernel);
+  return merged;
+}
+
+function knownAtoms(states: readonly SketchState[]): number[] {
+  const known = new Set<number>();
+  for (const state of states) {
+    for (const row of state.atoms.rows) if (row.known && known.size < MAX_ATOMS) known.add(row.value);
+  }
+  return [...known];
+}
+
+function addCounts(merged: SketchState, state: SketchState): void {
+  merged.finite += state.finite;
+  merged.missing += state.missing;
+  merged.nan += state.nan;
+  merged.positiveInfinity += state.positiveInfinity;
+  merged.negativeInfinity += state.negativeInfinity;
+  merged.min = Math.min(merged.min, state.min);
+  merged.max = Math.max(merged.max, state.max);
+  const sum = merged.sum + state.sum;
+  merged.sum = Math.min(Number.MAX_VALUE, Math.max(-Number.MAX_VALUE, sum));
+}
+
+function events(state: SketchState): number {
+  return state.finite + state.missing + state.nan + state.positiveInfinity + state.negativeInfinity;
+}
+
+/** A sketch that saw nothing has nothing to add and does not stand in the way. */
+function mergeThresholds(merged: SketchState, states: readonly SketchState[]): void {
+  const seen = states.filter((state) => events(state) > 0);
+  const counters = (seen.length > 0 ? seen : states).map((state) => state.thresholds);
+  const first = counters[0] ?? null;
+  if (first === null || !counters.every((counter) => counter?.matches(first))) return;
+  merged.thresholds = first.clone();
+  for (const counter of counters.slice(1)) if (counter !== null) merged.thresholds.add(counter);
+}
+
+function copyEntries(merged: SketchState, only: SketchState): void {
+  const copy = only.clone();
+  merged.means = copy.means;
+  merged.weights = copy.weights;
+  merged.size = copy.size;
+  merged.compressed = copy.compressed;
+  merged.sealed = copy.sealed;
+  merged.descending = copy.descending;
+  merged.atoms = copy.atoms;
+}
+
+/** All entries and atoms of all states in one sorted list, then runs of equal values, atoms, and one pass. */
+function mergeEntries(merged: SketchState, states: readonly SketchState[], kernel: Kernel): void {
+  const size = gatherEntries(states, kernel);
+  kernel.sortEntries(size);
+  merged.compressed = states.some((state) => state.compressed);
+  const runs = merged.compressed ? joinPureRuns(kernel, size) : mergeRuns(kernel, size, 0);
+  merged.takeEntries(kernel.outMeans, kernel.outWeights, runs, false);
+  if (merged.compressed || runs > merged.exactLimit) leaveExact(merged, kernel);
+}
+
+function gatherEntries(states: readonly SketchState[], kernel: Kernel): number {
+  kernel.reserve(
+    0,
+    states.reduce((sum, state) => sum + state.size + state.atoms.rows.length, 0),
+  );
+  const { means, weights } = kernel;
+  let at = 0;
+  for (const state of states) {
+    means.set(state.means.subarray(0, state.size), at);
+    weights.set(state.weights.subarray(0, state.size), at);
+    at += state.size;
+    for (const { value, count } of state.atoms.rows) {
+      if (count === 0) continue;
+      means[at] = value;
+      weights[at] = count;
+      at++;
+    }
+  }
+  return at;
+}
+
+/** Joins neighbouring pure entries of one value, in the out arrays; mixed entries stay as they are. */
+function joinPureRuns(kernel: Kernel, size: number): number {
+  const { means, weights, outMeans, outWeights } = kernel;
+  let count = 0;
+  let lastPure = -1; // where the last pure entry was written
+  for (let i = 0; i < size; i++) {
+    const pure = weights[i]! > 0;
+    if (pure && lastPure >= 0 && outMeans[lastPure] === means[i]) {
+      outWeights[lastPure] = outWeights[lastPure]! + weights[i]!;
+      continue;
+    }
+    outMeans[count] = means[i]!;
+    outWeights[count] = weights[i]!;
+    if (pure) lastPure = count;
+    count++;
+  }
+  return count;
+}
