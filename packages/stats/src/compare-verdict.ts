@@ -1,0 +1,68 @@
+import { DEFAULT_DECISION_RULE, type DecisionRule } from "./decision-rule.js";
+import { BAND_CRITICAL } from "./deviance-band.js";
+import { type DriftPlace, placeOf, sentenceOf } from "./drift-place.js";
+import { countInWords } from "./figures-in-words.js";
+import type { NumericComparison } from "./numeric-comparison.js";
+import { type Standing, standingOf } from "./tolerance.js";
+import { type WatchedShare, watchedShares } from "./watched-share.js";
+
+export interface Verdict {
+  readonly state: "holding" | "straining" | "adrift" | "thin";
+  /** Where it left tolerance or band furthest; null when it did not. */
+  readonly place: DriftPlace | null;
+  readonly sentence: string;
+}
+
+/**
+ * What one comparison without a time axis amounts to.
+ *
+ * Definition  at each watched share: is the effect floor passed (and not within noise, |z| ≥ zWindow), and is the 99.9 % simultaneous band
+ *             left (|z| > 4.1)? Both at one place → adrift; only one anywhere → straining; none → holding.
+ * Edges       thin when fewer effective events than `minEvents` stand on both sides, unless both conditions hold anyway:
+ *             what is plain from few values is said, only "holding" needs many.
+ * Source      docs/decision.md
+ */
+export function compareVerdict(
+  comparison: NumericComparison,
+  rule: DecisionRule = DEFAULT_DECISION_RULE,
+): Verdict {
+  const judged = watchedShares(comparison, FEWEST)
+    .map((share) => ({ share, standing: standingOf(share, rule) }))
+    .sort((a, b) => Math.abs(b.standing.z) - Math.abs(a.standing.z));
+  const adrift = judged.find(({ standing }) => standing.beyond && leavesBand(standing));
+  if (adrift) return verdictAt("adrift", adrift);
+  const enough = watchedShares(comparison, rule.minEvents);
+  if (!enough.some((share) => share.part !== "missing")) {
+    return { state: "thin", place: null, sentence: thinSentence(comparison) };
+  }
+  const straining = judged.find(({ standing }) => standing.beyond || leavesBand(standing));
+  if (straining) return verdictAt("straining", straining);
+  return { state: "holding", place: null, sentence: holdingSentence(comparison) };
+}
+
+/** Below this even a total displacement cannot leave the band. */
+const FEWEST = 1;
+
+function leavesBand(standing: Standing): boolean {
+  return Math.abs(standing.z) > BAND_CRITICAL[0.999];
+}
+
+function verdictAt(
+  state: "adrift" | "straining",
+  found: { readonly share: WatchedShare; readonly standing: Standing },
+): Verdict {
+  return { state, place: placeOf(found.share, found.standing.z), sentence: sentenceOf(found.share) };
+}
+
+/** Why a comparison is too thin, in words. */
+export function thinSentence(comparison: NumericComparison): string {
+  const { n, reason } = comparison;
+  if (reason !== null) return `too few values to tell: ${reason}`;
+  return `too few values to tell: n = ${countInWords(n.production)} against ${countInWords(n.baseline)} in the baseline`;
+}
+
+/** That nothing is beyond tolerance, in words. */
+export function holdingSentence(comparison: NumericComparison): string {
+  const { n } = comparison;
+  return `within tolerance at every threshold; n = ${countInWords(n.production)} against ${countInWords(n.baseline)} in the baseline`;
+}
