@@ -1,7 +1,8 @@
+import { findEdges } from "./find-edges.js";
 import { mergeRuns } from "./exact-runs.js";
 import { collectAtoms, promoteRuns } from "./flush-atoms.js";
 import type { Kernel } from "./kernel/kernel.js";
-import { mixScale } from "./scale.js";
+import { edgeGrowth, mixScale } from "./scale.js";
 import type { SketchState } from "./sketch-state.js";
 import { addToSum } from "./sum-values.js";
 
@@ -36,8 +37,12 @@ export function leaveExact(state: SketchState, kernel: Kernel): void {
 /** One merging pass over the entries and kernel.values[0, valueCount). Turns the direction of the next. */
 export function compress(state: SketchState, kernel: Kernel, valueCount: number, compression: number): void {
   loadEntries(state, kernel);
-  const total = state.finite - state.atoms.count;
-  const count = kernel.mergePass(state.size, valueCount, mixScale(compression, total), state.descending);
+  const scale = mixScale(compression, state.finite - state.atoms.count);
+  const edges = findEdges(state, kernel.values, valueCount);
+  // At the full compression even for a seal: the clusters beside an edge are few, and the shape there is steep.
+  const growth = edgeGrowth(mixScale(state.compression, scale.total));
+  const plan = { ...scale, ...growth, edges, descending: state.descending };
+  const count = kernel.mergePass(state.size, valueCount, plan);
   state.takeEntries(kernel.outMeans, kernel.outWeights, count, state.descending);
   state.descending = !state.descending;
 }

@@ -24,3 +24,11 @@ export function unitShare(scale: PassScale, rank: number): number {
   const p = rank * (1 - rank);
   return p > 0 ? p / (scale.middle * Math.sqrt(p) + scale.tail) : 0;
 }
+
+/**
+ * The same tails beside an edge inside the distribution: one unit of k2 alone, as a share of the events between a cluster's
+ * start and the edge behind it (growth) or ahead of it (decay).
+ */
+export function edgeGrowth(scale: PassScale): { growth: number; decay: number } {
+  return { growth: Math.exp(1 / scale.tail) - 1, decay: 1 - Math.exp(-1 / scale.tail) };
+}

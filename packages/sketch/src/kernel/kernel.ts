@@ -14,23 +14,29 @@ export interface Kernel {
   readonly outWeights: Float64Array;
   /** Makes room; every array may be a new one afterwards, and its content is lost. */
   reserve(valueCount: number, entryCount: number): void;
-  /** Sorts values[0, count) ascending and says whether all are finite; if not, the order is unspecified. */
+  /** Sorts values[0, count) ascending, −0 as 0, and says whether all are finite; if not, the order is unspecified. */
   sortValues(count: number): boolean;
   /** Sorts the entries [0, count) by mean, stable. */
   sortEntries(count: number): void;
-  /** Merges entries and values (each of weight 1) into clusters of at most one unit of k; gives the number of clusters. */
-  mergePass(entryCount: number, valueCount: number, scale: PassScale, descending: boolean): number;
+  /** Merges entries and sorted values (of weight 1 each) into clusters of at most one unit of k; gives their number. */
+  mergePass(entryCount: number, valueCount: number, plan: PassPlan): number;
 }
 
-/** The scale function of one pass: a cluster starting below `q` may weigh total·p / (middle·√p + tail), p = q(1 − q). */
+/** The scale function: one unit of k at rank q is the share p / (middle·√p + tail) of all, with p = q(1 − q). */
 export interface PassScale {
   readonly total: number;
   readonly middle: number;
   readonly tail: number;
 }
 
-/** A gap counts as one when it is this many times wider than the spacing of the clusters before it. */
-export const GAP_RATIO = 64;
+export interface PassPlan extends PassScale {
+  readonly descending: boolean;
+  /** Ranks (in events, ascending) of wide gaps: the clusters beside them are as fine as at the ends of the distribution. */
+  readonly edges: readonly number[];
+  /** Of the events between a cluster and the edge behind it, the share that the cluster may hold; and of those ahead. */
+  readonly growth: number;
+  readonly decay: number;
+}
 
-/** How many gaps a pass may keep open; each costs at most three clusters more. */
-export const GAP_BUDGET = 8;
+/** Sums of distances are kept this much smaller, so that they overflow only for clusters wider than MAX_VALUE. */
+export const SUM_SCALE = 2 ** -40;

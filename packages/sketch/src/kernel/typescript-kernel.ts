@@ -1,4 +1,4 @@
-import type { Kernel, PassScale } from "./kernel.js";
+import type { Kernel, PassPlan } from "./kernel.js";
 import { mergePass } from "./merge-pass.js";
 
 const FIRST_CAPACITY = 1024;
@@ -26,7 +26,9 @@ export class TypescriptKernel implements Kernel {
   sortValues(count: number): boolean {
     const values = this.values.subarray(0, count).sort();
     // Sorted, the infinities stand at the ends and NaN after them.
-    return count === 0 || (Number.isFinite(values[0]!) && Number.isFinite(values[count - 1]!));
+    if (count > 0 && !(Number.isFinite(values[0]!) && Number.isFinite(values[count - 1]!))) return false;
+    for (let i = 0; i < count; i++) values[i] = values[i]! + 0;
+    return true;
   }
 
   sortEntries(count: number): void {
@@ -40,8 +42,8 @@ export class TypescriptKernel implements Kernel {
     }
   }
 
-  mergePass(entryCount: number, valueCount: number, scale: PassScale, descending: boolean): number {
-    return mergePass(this, entryCount, valueCount, scale, descending);
+  mergePass(entryCount: number, valueCount: number, plan: PassPlan): number {
+    return mergePass(this, entryCount, valueCount, plan);
   }
 }
 

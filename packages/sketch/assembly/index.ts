@@ -1,0 +1,9 @@
+// The WebAssembly kernel (AssemblyScript). Pointers are byte offsets that src/kernel/wasm-kernel.ts hands out.
+export { mergePass } from "./merge-pass";
+export { sortEntries } from "./sort-entries";
+export { sortValues } from "./sort-values";
+
+/** The first byte that is free for scratch arrays. */
+export function heapBase(): usize {
+  return __heap_base;
+}
