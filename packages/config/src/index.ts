@@ -1,1 +1,10 @@
+export { type ConfigProblem, formatProblem } from "./config-problem.js";
+export { formatDuration, parseDuration } from "./duration.js";
+export { ENV_OVERRIDES, type Environment, type EnvOverride } from "./env-overrides.js";
+export { findFeature, findStream } from "./find-stream.js";
+export { configJsonSchema, type JsonSchemaNode } from "./json-schema.js";
+export { loadConfig, type ParseConfigOptions, parseConfig } from "./load-config.js";
 export type * from "./moorline-config.js";
+export { nearestName } from "./nearest-name.js";
+export { parsePath } from "./path-segments.js";
+export { referenceTable } from "./reference-table.js";

@@ -76,7 +76,10 @@ export interface KafkaSourceConfig {
 /** NDJSON files; each is one partition, in the order given; an offset is the byte position of a line's start. */
 export interface FileSourceConfig {
   readonly kind: "file";
+  /** Absolute: a relative path is taken from the folder of the config file. */
   readonly paths: readonly string[];
+  /** The paths as the config has them, in the same order: what partitions are called, so that a moved folder keeps its offsets. */
+  readonly names: readonly string[];
   /** True: wait for more lines at the end of a file. False: the stream ends there. */
   readonly follow: boolean;
   readonly deadLetterPath: string | null;
