@@ -2,6 +2,7 @@
 export { mergePass } from "./merge-pass";
 export { sortEntries } from "./sort-entries";
 export { sortValues } from "./sort-values";
+export { sumValues } from "./sum-values";
 
 /** The first byte that is free for scratch arrays. */
 export function heapBase(): usize {

@@ -1,20 +1,18 @@
 /** Sums of distances are kept this much smaller, so that they overflow only for clusters wider than MAX_VALUE. */
 const SUM_SCALE: f64 = 1.0 / 1099511627776.0;
 
-/** One unit of k for a cluster that starts after `done`, by the midpoint rule. */
-// @ts-ignore: decorators are AssemblyScript
-@inline
-function unitAfter(done: f64, total: f64, middle: f64, tail: f64): f64 {
-  const q = done / total;
+/** One unit of k for a cluster that starts after `done`: the unit at the start and half of its change over its own width. */
+function unitAfter(done: f64, perEvent: f64, total: f64, middle: f64, tail: f64): f64 {
+  const q = done * perEvent;
   const p = q * (1.0 - q);
-  const r = q + (0.5 * p) / (middle * sqrt<f64>(p) + tail);
-  const s = r * (1.0 - r);
-  if (!(s > 0.0)) return 0.0;
-  return (total * s) / (middle * sqrt<f64>(s) + tail);
+  if (!(p > 0.0)) return 0.0;
+  const bend = middle * sqrt<f64>(p);
+  const inverse = 1.0 / (bend + tail);
+  const unit = p * inverse;
+  const slope = (0.5 * bend + tail) * (inverse * inverse) * (1.0 - 2.0 * q);
+  return total * (unit * (1.0 + 0.5 * slope));
 }
 
-// @ts-ignore: decorators are AssemblyScript
-@inline
 function centreOf(first: f64, last: f64, sum: f64, weight: f64): f64 {
   const centre = first + sum / weight / SUM_SCALE;
   if (!(centre < Infinity)) return first * 0.5 + last * 0.5;
@@ -40,8 +38,38 @@ export function mergePass(
   decay: f64,
 ): i32 {
   return descending
-    ? pass<i32>(values, valueCount, means, weights, entryCount, outMeans, outWeights, edges, edgeCount, total, middle, tail, growth, decay)
-    : pass<f64>(values, valueCount, means, weights, entryCount, outMeans, outWeights, edges, edgeCount, total, middle, tail, growth, decay);
+    ? pass<i32>(
+        values,
+        valueCount,
+        means,
+        weights,
+        entryCount,
+        outMeans,
+        outWeights,
+        edges,
+        edgeCount,
+        total,
+        middle,
+        tail,
+        growth,
+        decay,
+      )
+    : pass<f64>(
+        values,
+        valueCount,
+        means,
+        weights,
+        entryCount,
+        outMeans,
+        outWeights,
+        edges,
+        edgeCount,
+        total,
+        middle,
+        tail,
+        growth,
+        decay,
+      );
 }
 
 /** D = f64: ascending; D = i32: descending. A type parameter makes two functions without a test of the direction inside. */
@@ -62,93 +90,96 @@ function pass<D>(
   decay: f64,
 ): i32 {
   const descending = isInteger<D>();
-  let entry = descending ? means + (<usize>entryCount << 3) - 8 : means;
-  let next = descending ? values + (<usize>valueCount << 3) - 8 : values;
+  const perEvent = 1.0 / total;
+  const outEnd = (<usize>(entryCount + valueCount)) << 3;
+  const step: usize = descending ? -8 : 8;
   const toWeight: usize = weights - means;
-  let entriesLeft = entryCount;
-  let valuesLeft = valueCount;
-  let count: usize = 0;
+  const toOutWeight: usize = outWeights - outMeans;
+  let entry = descending ? means + ((<usize>entryCount) << 3) - 8 : means;
+  let next = descending ? values + ((<usize>valueCount) << 3) - 8 : values;
+  let out = descending ? outMeans + outEnd - 8 : outMeans;
+  const entriesEnd = descending ? means - 8 : means + ((<usize>entryCount) << 3);
+  const valuesEnd = descending ? values - 8 : values + ((<usize>valueCount) << 3);
+  let mean: f64 = entryCount > 0 ? (descending ? -load<f64>(entry) : load<f64>(entry)) : Infinity;
+  let value: f64 = valueCount > 0 ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
+  let count = 0;
   let done: f64 = 0;
-  let first: f64 = 0;
-  let last: f64 = 0;
-  let weight: f64 = 0;
-  let sum: f64 = 0;
-  let pure = true;
-  let limit: f64 = 0;
   let edge = 0;
   let behind: f64 = -Infinity;
-  let ahead: f64 = Infinity;
-  if (edgeCount > 0) {
-    ahead = descending ? total - load<f64>(edges + ((<usize>edgeCount - 1) << 3)) : load<f64>(edges);
-  }
-  let mean: f64 = Infinity;
-  let value: f64 = Infinity;
-  if (entriesLeft > 0) mean = descending ? -load<f64>(entry) : load<f64>(entry);
-  if (valuesLeft > 0) value = descending ? -load<f64>(next) : load<f64>(next);
-  while (true) {
-    let x = value;
-    let w: f64 = 1.0;
+  let ahead: f64 = edgeAt(edges, edgeCount, 0, descending, total);
+  while (entry !== entriesEnd || next !== valuesEnd) {
+    let first = value;
+    let weight: f64 = 1.0;
+    let pure = true;
     if (mean <= value) {
-      if (entriesLeft == 0) break; // both are at infinity
-      x = mean;
-      w = load<f64>(entry + toWeight);
-      entriesLeft--;
-      if (descending) entry -= 8;
-      else entry += 8;
-      mean = Infinity;
-      if (entriesLeft > 0) mean = descending ? -load<f64>(entry) : load<f64>(entry);
+      first = mean;
+      weight = load<f64>(entry + toWeight);
+      pure = weight > 0.0;
+      if (!pure) weight = -weight;
+      entry += step;
+      mean = entry !== entriesEnd ? (descending ? -load<f64>(entry) : load<f64>(entry)) : Infinity;
     } else {
-      valuesLeft--;
-      if (descending) next -= 8;
-      else next += 8;
-      value = Infinity;
-      if (valuesLeft > 0) value = descending ? -load<f64>(next) : load<f64>(next);
+      next += step;
+      value = next !== valuesEnd ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
     }
-    const single = w > 0.0;
-    if (!single) w = -w;
-    const same = pure && single && x == first;
-    if (weight + w <= limit || (same && weight > 0.0)) {
-      weight += w;
-      sum += (x - first) * (w * SUM_SCALE);
-      pure = same;
-      last = x;
-      continue;
-    }
-    if (weight > 0.0) {
-      const centre = centreOf(first, last, sum, weight);
-      store<f64>(outMeans + (count << 3), (descending ? -centre : centre) + 0.0);
-      store<f64>(outWeights + (count << 3), pure ? weight : -weight);
-      count++;
-      done += weight;
-    }
-    first = x;
-    last = x;
-    weight = w;
-    sum = 0;
-    pure = single;
-    while (ahead <= done) {
-      behind = ahead;
-      edge++;
-      ahead = Infinity;
-      if (edge < edgeCount) {
-        const at = descending ? edgeCount - 1 - edge : edge;
-        const rank = load<f64>(edges + (<usize>at << 3));
-        ahead = descending ? total - rank : rank;
-      }
-    }
-    limit = unitAfter(done, total, middle, tail);
+    let limit = unitAfter(done, perEvent, total, middle, tail);
     if (edgeCount > 0) {
-      const byGrowth = (done - behind) * growth;
-      const byDecay = (ahead - done) * decay;
-      if (byGrowth < limit) limit = byGrowth;
-      if (byDecay < limit) limit = byDecay;
+      while (ahead <= done) {
+        behind = ahead;
+        edge++;
+        ahead = edgeAt(edges, edgeCount, edge, descending, total);
+      }
+      limit = min(limit, min((done - behind) * growth, (ahead - done) * decay));
     }
-  }
-  if (weight > 0.0) {
+    let last = first;
+    let sum: f64 = 0;
+    while (true) {
+      // The run of values before the next entry, as far as there is room.
+      const room = <i32>min(limit - weight, <f64>valueCount);
+      let left = room;
+      while (left > 0 && value < mean) {
+        sum += (value - first) * SUM_SCALE;
+        last = value;
+        left--;
+        next += step;
+        value = next !== valuesEnd ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
+      }
+      if (room > 0) weight += <f64>(room - left);
+      pure = pure && last === first;
+      if (value < mean) {
+        if (!(pure && value === first)) break;
+        // Equal values stay together, whatever they weigh.
+        weight += 1.0;
+        next += step;
+        value = next !== valuesEnd ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
+        continue;
+      }
+      if (entry === entriesEnd) break;
+      const signed = load<f64>(entry + toWeight);
+      const single = signed > 0.0;
+      const w = single ? signed : -signed;
+      const same = pure && single && mean === first;
+      if (!(weight + w <= limit) && !same) break;
+      weight += w;
+      sum += (mean - first) * (w * SUM_SCALE);
+      pure = same;
+      last = mean;
+      entry += step;
+      mean = entry !== entriesEnd ? (descending ? -load<f64>(entry) : load<f64>(entry)) : Infinity;
+    }
     const centre = centreOf(first, last, sum, weight);
-    store<f64>(outMeans + (count << 3), (descending ? -centre : centre) + 0.0);
-    store<f64>(outWeights + (count << 3), pure ? weight : -weight);
+    store<f64>(out, (descending ? -centre : centre) + 0.0);
+    store<f64>(out + toOutWeight, pure ? weight : -weight);
+    out += step;
     count++;
+    done += weight;
   }
-  return <i32>count;
+  return count;
+}
+
+function edgeAt(edges: usize, edgeCount: i32, index: i32, descending: bool, total: f64): f64 {
+  if (index >= edgeCount) return Infinity;
+  const at = descending ? edgeCount - 1 - index : index;
+  const rank = load<f64>(edges + ((<usize>at) << 3));
+  return descending ? total - rank : rank;
 }

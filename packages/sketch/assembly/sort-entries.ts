@@ -12,14 +12,20 @@ const runStarts: usize = memory.data((MOST_RUNS + 1) * 4);
 const MOVES_PER_ENTRY = 8;
 
 /** Sorts entries by mean, stable: equal means keep the order in which their sketches were given. */
-export function sortEntries(means: usize, weights: usize, meanScratch: usize, weightScratch: usize, count: i32): void {
+export function sortEntries(
+  means: usize,
+  weights: usize,
+  meanScratch: usize,
+  weightScratch: usize,
+  count: i32,
+): void {
   const runs = findRuns(means, count);
   if (runs <= 1) return;
   if (runs <= MOST_RUNS) {
     mergeRunsInPairs(means, weights, meanScratch, weightScratch, runs);
     return;
   }
-  const bytes = <usize>count << 3;
+  const bytes = (<usize>count) << 3;
   let least: u64 = u64.MAX_VALUE;
   let greatest: u64 = 0;
   for (let at: usize = 0; at < bytes; at += 8) {
@@ -40,36 +46,42 @@ function findRuns(means: usize, count: i32): i32 {
   let runs = 0;
   let before: f64 = Infinity;
   for (let i = 0; i < count; i++) {
-    const mean = load<f64>(means + (<usize>i << 3));
-    if (i == 0 || mean < before) {
-      if (runs == MOST_RUNS) return MOST_RUNS + 1;
-      store<i32>(runStarts + (<usize>runs << 2), i);
+    const mean = load<f64>(means + ((<usize>i) << 3));
+    if (i === 0 || mean < before) {
+      if (runs === MOST_RUNS) return MOST_RUNS + 1;
+      store<i32>(runStarts + ((<usize>runs) << 2), i);
       runs++;
     }
     before = mean;
   }
-  if (runs <= MOST_RUNS) store<i32>(runStarts + (<usize>runs << 2), count);
+  if (runs <= MOST_RUNS) store<i32>(runStarts + ((<usize>runs) << 2), count);
   return runs;
 }
 
-function mergeRunsInPairs(means: usize, weights: usize, meanScratch: usize, weightScratch: usize, runs: i32): void {
+function mergeRunsInPairs(
+  means: usize,
+  weights: usize,
+  meanScratch: usize,
+  weightScratch: usize,
+  runs: i32,
+): void {
   let fromMeans = means;
   let fromWeights = weights;
   let toMeans = meanScratch;
   let toWeights = weightScratch;
-  const bytes = <usize>load<i32>(runStarts + (<usize>runs << 2)) << 3;
+  const bytes = (<usize>load<i32>(runStarts + ((<usize>runs) << 2))) << 3;
   let left = runs;
   while (left > 1) {
     let written = 0;
     for (let run = 0; run < left; run += 2) {
-      const start = load<i32>(runStarts + (<usize>run << 2));
-      const middle = load<i32>(runStarts + (<usize>(run + 1) << 2));
-      const end = run + 1 < left ? load<i32>(runStarts + (<usize>(run + 2) << 2)) : middle;
+      const start = load<i32>(runStarts + ((<usize>run) << 2));
+      const middle = load<i32>(runStarts + ((<usize>(run + 1)) << 2));
+      const end = run + 1 < left ? load<i32>(runStarts + ((<usize>(run + 2)) << 2)) : middle;
       mergePair(fromMeans, fromWeights, toMeans, toWeights, start, middle, end);
-      store<i32>(runStarts + (<usize>written << 2), start);
+      store<i32>(runStarts + ((<usize>written) << 2), start);
       written++;
     }
-    store<i32>(runStarts + (<usize>written << 2), <i32>(bytes >> 3));
+    store<i32>(runStarts + ((<usize>written) << 2), <i32>(bytes >> 3));
     left = written;
     const swapMeans = fromMeans;
     fromMeans = toMeans;
@@ -78,7 +90,7 @@ function mergeRunsInPairs(means: usize, weights: usize, meanScratch: usize, weig
     fromWeights = toWeights;
     toWeights = swapWeights;
   }
-  if (fromMeans != means) {
+  if (fromMeans !== means) {
     memory.copy(means, fromMeans, bytes);
     memory.copy(weights, fromWeights, bytes);
   }
@@ -93,10 +105,10 @@ function mergePair(
   middle: i32,
   end: i32,
 ): void {
-  let a = <usize>start << 3;
-  let b = <usize>middle << 3;
+  let a = (<usize>start) << 3;
+  let b = (<usize>middle) << 3;
   const aEnd = b;
-  const bEnd = <usize>end << 3;
+  const bEnd = (<usize>end) << 3;
   for (let to = a; to < bEnd; to += 8) {
     const takeA = b >= bEnd || (a < aEnd && load<f64>(fromMeans + a) <= load<f64>(fromMeans + b));
     const from = takeA ? a : b;
@@ -126,18 +138,18 @@ function sortDigits(
   for (let at: usize = 0; at < bytes; at += 8) {
     let digits = (keyOf(load<u64>(means + at)) - least) >> shift;
     for (let pass = 0; pass < passes; pass++) {
-      const slot = histograms + (<usize>(pass * BUCKETS + <i32>(digits & DIGIT_MASK)) << 2);
+      const slot = histograms + ((<usize>(pass * BUCKETS + <i32>(digits & DIGIT_MASK))) << 2);
       store<u32>(slot, load<u32>(slot) + 1);
       digits >>= DIGIT_BITS;
     }
   }
   for (let pass = 0; pass < passes; pass++) {
-    const histogram = histograms + (<usize>(pass * BUCKETS) << 2);
+    const histogram = histograms + ((<usize>(pass * BUCKETS)) << 2);
     const digitShift = shift + <u64>pass * DIGIT_BITS;
     toOffsets(histogram);
     for (let at: usize = 0; at < bytes; at += 8) {
       const bits = load<u64>(fromMeans + at);
-      const slot = histogram + (<usize>(((keyOf(bits) - least) >> digitShift) & DIGIT_MASK) << 2);
+      const slot = histogram + ((<usize>(((keyOf(bits) - least) >> digitShift) & DIGIT_MASK)) << 2);
       const offset = <usize>load<u32>(slot);
       store<u64>(toMeans + offset, bits);
       store<u64>(toWeights + offset, load<u64>(fromWeights + at));
@@ -150,7 +162,7 @@ function sortDigits(
     fromWeights = toWeights;
     toWeights = swapWeights;
   }
-  if (fromMeans != means) {
+  if (fromMeans !== means) {
     memory.copy(means, fromMeans, bytes);
     memory.copy(weights, fromWeights, bytes);
   }

@@ -15,7 +15,7 @@ const histograms: usize = memory.data(6 * 2048 * 4);
 const INSERTION_LIMIT = 40;
 
 /** Moves per value that the fix-up may take before the whole key is sorted instead. */
-const MOVES_PER_VALUE = 8;
+const MOVES_PER_VALUE = 2;
 
 /**
  * Sorts values ascending, −0 as 0; gives 0, and leaves them in any order, when one is not finite.
@@ -25,7 +25,7 @@ const MOVES_PER_VALUE = 8;
  * take too many moves (clusters far apart) all six digits are sorted; digits that all values share are skipped.
  */
 export function sortValues(values: usize, scratch: usize, count: i32): i32 {
-  const end = values + (<usize>count << 3);
+  const end = values + ((<usize>count) << 3);
   let least: u64 = u64.MAX_VALUE;
   let greatest: u64 = 0;
   let before: u64 = 0;
@@ -39,9 +39,9 @@ export function sortValues(values: usize, scratch: usize, count: i32): i32 {
     least = key < least ? key : least;
     greatest = key > greatest ? key : greatest;
   }
-  if (count == 0) return 1;
+  if (count === 0) return 1;
   if (least < LEAST_FINITE_KEY || greatest > GREATEST_FINITE_KEY) return 0;
-  if (descents == 0) return 1;
+  if (descents === 0) return 1;
   if (count <= INSERTION_LIMIT) {
     insertionSort(values, end, i32.MAX_VALUE);
     return 1;
@@ -49,18 +49,19 @@ export function sortValues(values: usize, scratch: usize, count: i32): i32 {
   const rangeBits = 64 - clz<u64>(greatest - least);
   const shift: u64 = rangeBits > 2 * DIGIT_BITS ? rangeBits - 2 * DIGIT_BITS : 0;
   sortTwoDigits(values, end, scratch, count, least, shift);
-  if (shift > 0 && !insertionSort(values, end, count * MOVES_PER_VALUE)) sortAllDigits(values, scratch, count);
+  if (shift > 0 && !insertionSort(values, end, count * MOVES_PER_VALUE))
+    sortAllDigits(values, scratch, count);
   return 1;
 }
 
 function sortTwoDigits(values: usize, end: usize, scratch: usize, count: i32, least: u64, shift: u64): void {
   const low = histograms;
-  const high = histograms + (<usize>BUCKETS << 2);
+  const high = histograms + ((<usize>BUCKETS) << 2);
   memory.fill(low, 0, 2 * BUCKETS * 4);
   for (let at = values; at < end; at += 8) {
     const digits = (keyOf(load<u64>(at)) - least) >> shift;
-    const lowAt = low + (<usize>(digits & DIGIT_MASK) << 2);
-    const highAt = high + (<usize>(digits >> DIGIT_BITS) << 2);
+    const lowAt = low + ((<usize>(digits & DIGIT_MASK)) << 2);
+    const highAt = high + ((<usize>(digits >> DIGIT_BITS)) << 2);
     store<u32>(lowAt, load<u32>(lowAt) + 1);
     store<u32>(highAt, load<u32>(highAt) + 1);
   }
@@ -68,16 +69,16 @@ function sortTwoDigits(values: usize, end: usize, scratch: usize, count: i32, le
   toOffsets(high);
   for (let at = values; at < end; at += 8) {
     const bits = load<u64>(at);
-    const slot = low + (<usize>(((keyOf(bits) - least) >> shift) & DIGIT_MASK) << 2);
+    const slot = low + ((<usize>(((keyOf(bits) - least) >> shift) & DIGIT_MASK)) << 2);
     const offset = load<u32>(slot);
     store<u64>(scratch + <usize>offset, bits);
     store<u32>(slot, offset + 8);
   }
-  const scratchEnd = scratch + (<usize>count << 3);
+  const scratchEnd = scratch + ((<usize>count) << 3);
   const highShift = shift + DIGIT_BITS;
   for (let at = scratch; at < scratchEnd; at += 8) {
     const bits = load<u64>(at);
-    const slot = high + (<usize>((keyOf(bits) - least) >> highShift) << 2);
+    const slot = high + ((<usize>((keyOf(bits) - least) >> highShift)) << 2);
     const offset = load<u32>(slot);
     store<u64>(values + <usize>offset, bits);
     store<u32>(slot, offset + 8);
@@ -103,7 +104,7 @@ function insertionSort(values: usize, end: usize, most: i32): bool {
 
 function sortAllDigits(values: usize, scratch: usize, count: i32): void {
   memory.fill(histograms, 0, 6 * BUCKETS * 4);
-  const bytes = <usize>count << 3;
+  const bytes = (<usize>count) << 3;
   for (let at: usize = 0; at < bytes; at += 8) {
     let key = keyOf(load<u64>(values + at));
     for (let pass: usize = 0; pass < FULL_PASSES; pass++) {
@@ -118,11 +119,11 @@ function sortAllDigits(values: usize, scratch: usize, count: i32): void {
     const histogram = histograms + ((pass * <usize>BUCKETS) << 2);
     const shift = <u64>pass * DIGIT_BITS;
     const firstKey = keyOf(load<u64>(from));
-    if (load<u32>(histogram + (<usize>((firstKey >> shift) & DIGIT_MASK) << 2)) == <u32>count) continue;
+    if (load<u32>(histogram + ((<usize>((firstKey >> shift) & DIGIT_MASK)) << 2)) === <u32>count) continue;
     toOffsets(histogram);
     for (let at: usize = 0; at < bytes; at += 8) {
       const bits = load<u64>(from + at);
-      const slot = histogram + (<usize>((keyOf(bits) >> shift) & DIGIT_MASK) << 2);
+      const slot = histogram + ((<usize>((keyOf(bits) >> shift) & DIGIT_MASK)) << 2);
       const offset = load<u32>(slot);
       store<u64>(to + <usize>offset, bits);
       store<u32>(slot, offset + 8);
@@ -131,5 +132,5 @@ function sortAllDigits(values: usize, scratch: usize, count: i32): void {
     from = to;
     to = swap;
   }
-  if (from != values) memory.copy(values, from, bytes);
+  if (from !== values) memory.copy(values, from, bytes);
 }

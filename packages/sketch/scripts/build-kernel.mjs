@@ -19,7 +19,11 @@ if (modifiedMs(output) > Math.max(...inputs.map(modifiedMs))) process.exit(0);
 mkdirSync(dirname(output), { recursive: true });
 // Written beside and renamed: two builds at a time never leave half a file.
 const temporary = `${output}.${process.pid}`;
-const compiler = join(dirname(createRequire(import.meta.url).resolve("assemblyscript/package.json")), "bin", "asc.js");
+const compiler = join(
+  dirname(createRequire(import.meta.url).resolve("assemblyscript/package.json")),
+  "bin",
+  "asc.js",
+);
 const flags = ["-O3", "--noAssert", "--runtime", "stub", "--initialMemory", "4", "--config", "none"];
 const { status } = spawnSync(
   process.execPath,

@@ -1,8 +1,8 @@
-import { findEdges } from "./find-edges.js";
 import { mergeRuns } from "./exact-runs.js";
+import { findEdges } from "./find-edges.js";
 import { collectAtoms, promoteRuns } from "./flush-atoms.js";
 import type { Kernel } from "./kernel/kernel.js";
-import { edgeGrowth, mixScale } from "./scale.js";
+import { passPlan } from "./scale.js";
 import type { SketchState } from "./sketch-state.js";
 import { addToSum } from "./sum-values.js";
 
@@ -13,7 +13,7 @@ export function flushSorted(state: SketchState, kernel: Kernel, count: number): 
   state.finite += count;
   state.min = Math.min(state.min, values[0]!);
   state.max = Math.max(state.max, values[count - 1]!);
-  state.sum = addToSum(state.sum, values, count);
+  state.sum = addToSum(state.sum, kernel, count);
   state.thresholds?.countSorted(values, count);
   state.sealed = false;
   if (state.compressed) {
@@ -23,7 +23,7 @@ export function flushSorted(state: SketchState, kernel: Kernel, count: number): 
   }
   loadEntries(state, kernel);
   const runs = mergeRuns(kernel, state.size, count);
-  state.takeEntries(kernel.outMeans, kernel.outWeights, runs, false);
+  state.takeEntries(kernel.outMeans, kernel.outWeights, 0, runs);
   if (runs > state.exactLimit) leaveExact(state, kernel);
 }
 
@@ -37,13 +37,12 @@ export function leaveExact(state: SketchState, kernel: Kernel): void {
 /** One merging pass over the entries and kernel.values[0, valueCount). Turns the direction of the next. */
 export function compress(state: SketchState, kernel: Kernel, valueCount: number, compression: number): void {
   loadEntries(state, kernel);
-  const scale = mixScale(compression, state.finite - state.atoms.count);
+  const total = state.finite - state.atoms.count;
   const edges = findEdges(state, kernel.values, valueCount);
-  // At the full compression even for a seal: the clusters beside an edge are few, and the shape there is steep.
-  const growth = edgeGrowth(mixScale(state.compression, scale.total));
-  const plan = { ...scale, ...growth, edges, descending: state.descending };
+  const plan = passPlan(compression, state.compression, total, edges, state.descending);
   const count = kernel.mergePass(state.size, valueCount, plan);
-  state.takeEntries(kernel.outMeans, kernel.outWeights, count, state.descending);
+  const start = state.descending ? state.size + valueCount - count : 0;
+  state.takeEntries(kernel.outMeans, kernel.outWeights, start, count);
   state.descending = !state.descending;
 }
 

@@ -82,7 +82,7 @@ function mergeEntries(merged: SketchState, states: readonly SketchState[], kerne
   kernel.sortEntries(size);
   merged.compressed = states.some((state) => state.compressed);
   const runs = merged.compressed ? joinPureRuns(kernel, size) : mergeRuns(kernel, size, 0);
-  merged.takeEntries(kernel.outMeans, kernel.outWeights, runs, false);
+  merged.takeEntries(kernel.outMeans, kernel.outWeights, 0, runs);
   if (merged.compressed || runs > merged.exactLimit) leaveExact(merged, kernel);
 }
 

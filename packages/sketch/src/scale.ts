@@ -1,4 +1,4 @@
-import type { PassScale } from "./kernel/kernel.js";
+import type { PassPlan, PassScale } from "./kernel/kernel.js";
 
 /** Share of k1 (fine in the middle, for KS) in the mix; the rest is k2 (fine in the tails). */
 export const MIDDLE_SHARE = 0.6;
@@ -26,9 +26,19 @@ export function unitShare(scale: PassScale, rank: number): number {
 }
 
 /**
- * The same tails beside an edge inside the distribution: one unit of k2 alone, as a share of the events between a cluster's
- * start and the edge behind it (growth) or ahead of it (decay).
+ * The plan of one pass. Beside an edge inside the distribution a cluster holds one unit of k2 alone, as a share of the events
+ * between its start and the edge behind it (growth) or ahead of it (decay); of the working compression even when the pass is a
+ * seal, for those clusters are few and the shape there is steep.
  */
-export function edgeGrowth(scale: PassScale): { growth: number; decay: number } {
-  return { growth: Math.exp(1 / scale.tail) - 1, decay: 1 - Math.exp(-1 / scale.tail) };
+export function passPlan(
+  compression: number,
+  workingCompression: number,
+  total: number,
+  edges: readonly number[],
+  descending: boolean,
+): PassPlan {
+  const { middle, tail } = mixScale(compression, total);
+  if (edges.length === 0) return { total, middle, tail, descending, edges, growth: 0, decay: 0 };
+  const width = 1 / mixScale(workingCompression, total).tail;
+  return { total, middle, tail, descending, edges, growth: Math.exp(width) - 1, decay: 1 - Math.exp(-width) };
 }

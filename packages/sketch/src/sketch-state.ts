@@ -48,17 +48,14 @@ export class SketchState {
     return copy;
   }
 
-  /** Replaces the entries by the first `count` of the given arrays, turned round if they are descending. */
-  takeEntries(means: Float64Array, weights: Float64Array, count: number, descending: boolean): void {
+  /** Replaces the entries by `count` of the given arrays, from `start` on. */
+  takeEntries(means: Float64Array, weights: Float64Array, start: number, count: number): void {
     if (this.means.length < count || this.means.length > 4 * count + SPARE) {
       this.means = new Float64Array(count + SPARE);
       this.weights = new Float64Array(count + SPARE);
     }
-    for (let i = 0; i < count; i++) {
-      const from = descending ? count - 1 - i : i;
-      this.means[i] = means[from]!;
-      this.weights[i] = weights[from]!;
-    }
+    this.means.set(means.subarray(start, start + count));
+    this.weights.set(weights.subarray(start, start + count));
     this.size = count;
   }
 }

@@ -1,19 +1,9 @@
-/** Adds up values in four lanes. A sum beyond the range of numbers stays at ±MAX_VALUE: it is never infinite or NaN. */
-export function addToSum(sum: number, values: Float64Array, count: number): number {
-  let a = 0;
-  let b = 0;
-  let c = 0;
-  let d = 0;
-  let i = 0;
-  for (; i + 3 < count; i += 4) {
-    a += values[i]!;
-    b += values[i + 1]!;
-    c += values[i + 2]!;
-    d += values[i + 3]!;
-  }
-  for (; i < count; i++) a += values[i]!;
-  const total = sum + (a + b + (c + d));
-  return Number.isFinite(total) ? total : saturatedSum(sum, values, count);
+import type { Kernel } from "./kernel/kernel.js";
+
+/** Adds kernel.values[0, count). A sum beyond the range of numbers stays at ±MAX_VALUE: it is never infinite or NaN. */
+export function addToSum(sum: number, kernel: Kernel, count: number): number {
+  const total = sum + kernel.sumValues(count);
+  return Number.isFinite(total) ? total : saturatedSum(sum, kernel.values, count);
 }
 
 /** Small enough that no sum of scaled values overflows. */

@@ -9,13 +9,15 @@ export interface Kernel {
   /** Entries on their way into the merging pass: ascending means; weight > 0 is pure (one value), < 0 mixed. */
   readonly means: Float64Array;
   readonly weights: Float64Array;
-  /** What the merging pass wrote, in the order of the pass (descending means when the pass was descending). */
+  /** What the merging pass wrote, ascending: from 0 on, or up to entryCount + valueCount when the pass was descending. */
   readonly outMeans: Float64Array;
   readonly outWeights: Float64Array;
   /** Makes room; every array may be a new one afterwards, and its content is lost. */
   reserve(valueCount: number, entryCount: number): void;
   /** Sorts values[0, count) ascending, −0 as 0, and says whether all are finite; if not, the order is unspecified. */
   sortValues(count: number): boolean;
+  /** The sum of values[0, count), in four lanes. */
+  sumValues(count: number): number;
   /** Sorts the entries [0, count) by mean, stable. */
   sortEntries(count: number): void;
   /** Merges entries and sorted values (of weight 1 each) into clusters of at most one unit of k; gives their number. */

@@ -21,7 +21,8 @@ export function mergePass(arrays: Arrays, entryCount: number, valueCount: number
   let next = plan.descending ? valueCount - 1 : 0;
   let entriesLeft = entryCount;
   let valuesLeft = valueCount;
-  let count = 0;
+  const outStart = plan.descending ? entryCount + valueCount - 1 : 0;
+  let out = outStart;
   let done = 0; // weight of the clusters written
   let first = 0;
   let last = 0;
@@ -54,9 +55,9 @@ export function mergePass(arrays: Arrays, entryCount: number, valueCount: number
       continue;
     }
     if (weight > 0) {
-      outMeans[count] = step * centreOf(first, last, sum, weight) + 0;
-      outWeights[count] = pure ? weight : -weight;
-      count++;
+      outMeans[out] = step * centreOf(first, last, sum, weight) + 0;
+      outWeights[out] = pure ? weight : -weight;
+      out += step;
       done += weight;
     }
     first = x;
@@ -67,17 +68,17 @@ export function mergePass(arrays: Arrays, entryCount: number, valueCount: number
     limit = limits.after(done);
   }
   if (weight > 0) {
-    outMeans[count] = step * centreOf(first, last, sum, weight) + 0;
-    outWeights[count] = pure ? weight : -weight;
-    count++;
+    outMeans[out] = step * centreOf(first, last, sum, weight) + 0;
+    outWeights[out] = pure ? weight : -weight;
+    out += step;
   }
-  return count;
+  return Math.abs(out - outStart);
 }
 
 function centreOf(first: number, last: number, sum: number, weight: number): number {
   const centre = first + sum / weight / SUM_SCALE;
   if (!(centre < Number.POSITIVE_INFINITY)) return first * 0.5 + last * 0.5;
-  return centre > last ? last : centre;
+  return Math.min(centre, last);
 }
 
 /** How much a cluster may weigh by where it starts; asked with `done` ascending. */
@@ -98,14 +99,9 @@ class ClusterLimits {
       this.#edge++;
       this.#ahead = this.#edgeAt(this.#edge);
     }
-    const { total, middle, tail, growth, decay } = this.#plan;
-    // One unit of k by the midpoint rule: the unit at the start says where the middle of the cluster will be.
-    const q = done / total;
-    const p = q * (1 - q);
-    const r = q + (0.5 * p) / (middle * Math.sqrt(p) + tail);
-    const s = r * (1 - r);
-    if (!(s > 0)) return 0;
-    const unit = (total * s) / (middle * Math.sqrt(s) + tail);
+    const unit = unitAfter(done, this.#plan);
+    if (this.#plan.edges.length === 0) return unit;
+    const { growth, decay } = this.#plan;
     return Math.min(unit, (done - this.#behind) * growth, (this.#ahead - done) * decay);
   }
 
@@ -114,4 +110,16 @@ class ClusterLimits {
     if (index >= edges.length) return Number.POSITIVE_INFINITY;
     return descending ? total - edges[edges.length - 1 - index]! : edges[index]!;
   }
+}
+
+/** One unit of k for a cluster that starts after `done`: the unit at the start and half of its change over its own width. */
+function unitAfter(done: number, plan: PassPlan): number {
+  const q = done * (1 / plan.total);
+  const p = q * (1 - q);
+  if (!(p > 0)) return 0;
+  const bend = plan.middle * Math.sqrt(p);
+  const inverse = 1 / (bend + plan.tail);
+  const unit = p * inverse;
+  const slope = (0.5 * bend + plan.tail) * (inverse * inverse) * (1 - 2 * q);
+  return plan.total * (unit * (1 + 0.5 * slope));
 }

@@ -1,5 +1,6 @@
 import type { Kernel, PassPlan } from "./kernel.js";
 import { mergePass } from "./merge-pass.js";
+import { sumValues } from "./sum-values.js";
 
 const FIRST_CAPACITY = 1024;
 
@@ -29,6 +30,10 @@ export class TypescriptKernel implements Kernel {
     if (count > 0 && !(Number.isFinite(values[0]!) && Number.isFinite(values[count - 1]!))) return false;
     for (let i = 0; i < count; i++) values[i] = values[i]! + 0;
     return true;
+  }
+
+  sumValues(count: number): number {
+    return sumValues(this.values, count);
   }
 
   sortEntries(count: number): void {

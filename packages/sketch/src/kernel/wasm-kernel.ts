@@ -6,6 +6,7 @@ interface KernelExports {
   readonly memory: { readonly buffer: ArrayBuffer; grow(pages: number): number };
   heapBase(): number;
   sortValues(values: number, scratch: number, count: number): number;
+  sumValues(values: number, count: number): number;
   sortEntries(means: number, weights: number, scratch1: number, scratch2: number, count: number): void;
   mergePass(
     values: number,
@@ -57,6 +58,10 @@ export class WasmKernel implements Kernel {
   sortValues(count: number): boolean {
     // The sorted values' scratch lies in the out arrays, which nobody has written yet.
     return this.#exports.sortValues(this.values.byteOffset, this.outMeans.byteOffset, count) !== 0;
+  }
+
+  sumValues(count: number): number {
+    return this.#exports.sumValues(this.values.byteOffset, count);
   }
 
   sortEntries(count: number): void {
