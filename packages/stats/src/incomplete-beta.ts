@@ -13,10 +13,7 @@ import jstat from "jstat";
  *             Loader 2000 ("Fast and accurate computation of binomial probabilities").
  */
 export function incompleteBeta(x: number, a: number, b: number): number {
-  if (x <= 0) return 0;
-  if (x >= 1) return 1;
-  if (x <= (a + 1) / (a + b + 2)) return lowerPart(x, 1 - x, a, b);
-  return 1 - lowerPart(1 - x, x, b, a);
+  return betaTails(x, a, b).lower;
 }
 
 /**
@@ -33,7 +30,9 @@ export function betaQuantile(probability: number, a: number, b: number): number 
   let high = 1;
   let x = start > 0 && start < 1 ? start : a / (a + b);
   for (let step = 0; step < 40; step += 1) {
-    const miss = incompleteBeta(x, a, b) - probability;
+    const { lower, upper } = betaTails(x, a, b);
+    // Held against the smaller tail: 1 − probability is exact from ½ up, and so keeps its digits.
+    const miss = probability < 0.5 ? lower - probability : 1 - probability - upper;
     if (miss > 0) high = x;
     else low = x;
     const newton = x - (miss * x * (1 - x)) / scaledDensity(x, 1 - x, a, b);
@@ -42,6 +41,18 @@ export function betaQuantile(probability: number, a: number, b: number): number 
     x = next;
   }
   return x;
+}
+
+/** Both tails; the one on the far side of x from the mean is computed, the other is what it leaves. */
+function betaTails(x: number, a: number, b: number): { readonly lower: number; readonly upper: number } {
+  if (x <= 0) return { lower: 0, upper: 1 };
+  if (x >= 1) return { lower: 1, upper: 0 };
+  if (x <= (a + 1) / (a + b + 2)) {
+    const lower = lowerPart(x, 1 - x, a, b);
+    return { lower, upper: 1 - lower };
+  }
+  const upper = lowerPart(1 - x, x, b, a);
+  return { lower: 1 - upper, upper };
 }
 
 function lowerPart(x: number, y: number, a: number, b: number): number {
