@@ -78,8 +78,7 @@ function position(value: number, low: number, high: number): number {
 function rankEnvelope(state: SketchState): (rank: number) => number {
   if (!state.compressed) return () => 0;
   const digest = state.finite - state.atoms.count;
-  // Half the compression: what is decoded or merged went through a seal, and nobody should have to know.
-  const scale = mixScale(state.compression / 2, digest);
+  const scale = mixScale(state.coarsest, digest);
   const share = digest / state.finite;
   return (rank) => ENVELOPE_UNITS * share * unitShare(scale, rank);
 }

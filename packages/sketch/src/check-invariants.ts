@@ -1,4 +1,4 @@
-import { mixScale } from "./scale.js";
+import { mixScale, unitShare } from "./scale.js";
 import type { SketchState } from "./sketch-state.js";
 
 /** What is wrong with a state, one sentence each; empty when nothing is. For tests and for decoded bytes. */
@@ -19,6 +19,8 @@ function countProblems(state: SketchState): string[] {
     if (!Number.isInteger(entry) || entry < 1) problems.push(`1: entry ${i} weighs ${entry}`);
     weight += entry;
   }
+  if (!state.compressed && state.atoms.count > 0)
+    problems.push("4: an exact sketch holds atoms outside its entries");
   const held = weight + state.atoms.count;
   if (held !== state.finite)
     problems.push(`1: entries and atoms hold ${held} of ${state.finite} finite events`);
@@ -47,13 +49,13 @@ function orderProblems(state: SketchState): string[] {
   return problems;
 }
 
-/** Twice the unit: the pass bounds a cluster by its start with the midpoint rule and the number of events of its day. */
+/** A cluster may exceed the unit at its middle, for it was bounded by the unit at its start and the ranks of its day. */
 const UNIT_SLACK = 2;
 
 function clusterProblems(state: SketchState): string[] {
   const problems: string[] = [];
   const total = state.finite - state.atoms.count;
-  const scale = mixScale(state.compression / 2, total);
+  const scale = mixScale(state.coarsest, total);
   let before = 0;
   for (let i = 0; i < state.size; i++) {
     const weight = Math.abs(state.weights[i]!);
@@ -61,8 +63,7 @@ function clusterProblems(state: SketchState): string[] {
     if (mixed && !state.compressed) problems.push(`4: entry ${i} is mixed in an exact sketch`);
     if (mixed) {
       const q = (before + weight / 2) / total;
-      const p = q * (1 - q);
-      const unit = (total * p) / (scale.middle * Math.sqrt(p) + scale.tail);
+      const unit = total * unitShare(scale, q);
       if (weight > UNIT_SLACK * unit)
         problems.push(`3: entry ${i} weighs ${weight}, one unit of k is ${unit}`);
     }

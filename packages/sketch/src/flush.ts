@@ -44,6 +44,7 @@ export function compress(state: SketchState, kernel: Kernel, valueCount: number,
   const start = state.descending ? state.size + valueCount - count : 0;
   state.takeEntries(kernel.outMeans, kernel.outWeights, start, count);
   state.descending = !state.descending;
+  state.coarsest = Math.min(state.coarsest, compression);
 }
 
 function loadEntries(state: SketchState, kernel: Kernel): void {

@@ -3,6 +3,7 @@ import { mergeRuns } from "./exact-runs.js";
 import { leaveExact } from "./flush.js";
 import type { Kernel } from "./kernel/kernel.js";
 import { SketchState } from "./sketch-state.js";
+import { piecesPerCluster, spreadClusters } from "./spread-clusters.js";
 
 /** States merged in one pass; more are merged in groups of this many first, so that memory stays bounded. */
 const MOST_AT_ONCE = 4096;
@@ -71,6 +72,7 @@ function copyEntries(merged: SketchState, only: SketchState): void {
   merged.weights = copy.weights;
   merged.size = copy.size;
   merged.compressed = copy.compressed;
+  merged.coarsest = copy.coarsest;
   merged.sealed = copy.sealed;
   merged.descending = copy.descending;
   merged.atoms = copy.atoms;
@@ -78,25 +80,33 @@ function copyEntries(merged: SketchState, only: SketchState): void {
 
 /** All entries and atoms of all states in one sorted list, then runs of equal values, atoms, and one pass. */
 function mergeEntries(merged: SketchState, states: readonly SketchState[], kernel: Kernel): void {
-  const size = gatherEntries(states, kernel);
+  const size = gatherEntries(states, merged.compression, kernel);
   kernel.sortEntries(size);
-  merged.compressed = states.some((state) => state.compressed);
+  for (const state of states) {
+    if (!state.compressed) continue;
+    merged.compressed = true;
+    merged.coarsest = Math.min(merged.coarsest, state.coarsest);
+  }
   const runs = merged.compressed ? joinPureRuns(kernel, size) : mergeRuns(kernel, size, 0);
   merged.takeEntries(kernel.outMeans, kernel.outWeights, 0, runs);
   if (merged.compressed || runs > merged.exactLimit) leaveExact(merged, kernel);
 }
 
-function gatherEntries(states: readonly SketchState[], kernel: Kernel): number {
-  kernel.reserve(
-    0,
-    states.reduce((sum, state) => sum + state.size + state.atoms.rows.length, 0),
-  );
+function gatherEntries(states: readonly SketchState[], compression: number, kernel: Kernel): number {
+  const total = states.reduce((sum, state) => sum + state.finite, 0);
+  const pieces = states.map((state) => (state.compressed ? piecesPerCluster(state, total, compression) : 1));
+  const most = states.reduce((sum, state, i) => sum + pieces[i]! * state.size + state.atoms.rows.length, 0);
+  kernel.reserve(0, most);
   const { means, weights } = kernel;
   let at = 0;
-  for (const state of states) {
-    means.set(state.means.subarray(0, state.size), at);
-    weights.set(state.weights.subarray(0, state.size), at);
-    at += state.size;
+  for (const [i, state] of states.entries()) {
+    if (pieces[i]! > 1) {
+      at += spreadClusters(state, pieces[i]!, means, weights, at);
+    } else {
+      means.set(state.means.subarray(0, state.size), at);
+      weights.set(state.weights.subarray(0, state.size), at);
+      at += state.size;
+    }
     for (const { value, count } of state.atoms.rows) {
       if (count === 0) continue;
       means[at] = value;

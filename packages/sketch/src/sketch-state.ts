@@ -21,6 +21,8 @@ export class SketchState {
   size = 0;
   /** False while every event sits on an entry of its own value (the sketch is exact). */
   compressed = false;
+  /** The lowest compression of the passes that made the entries, those of merged sketches included. */
+  coarsest: number;
   /** Was the last thing that happened to the entries the seal of an encoding? */
   sealed = false;
   /** The direction of the next merging pass. */
@@ -30,6 +32,7 @@ export class SketchState {
 
   constructor(compression: number, thresholds: ThresholdSet | null, knownAtoms: readonly number[]) {
     this.compression = compression;
+    this.coarsest = compression;
     this.atoms = new AtomTable(knownAtoms);
     this.thresholds = thresholds === null ? null : new ThresholdCounter(thresholds);
   }

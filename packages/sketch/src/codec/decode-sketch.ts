@@ -1,7 +1,7 @@
 import { MoorlineError } from "@moorline/errors";
 import { AtomTable, MAX_ATOMS, type TableAtom } from "../atom-table.js";
 import { stateProblems } from "../check-invariants.js";
-import { LEAST_COMPRESSION, MOST_COMPRESSION } from "../compression.js";
+import { LEAST_COMPRESSION, MOST_COMPRESSION, SEAL_RATIO } from "../compression.js";
 import { SketchState } from "../sketch-state.js";
 import { MAX_THRESHOLD_ID_LENGTH, MAX_THRESHOLDS, ThresholdCounter } from "../threshold-counter.js";
 import { ByteReader } from "./byte-reader.js";
@@ -19,12 +19,19 @@ export function decodeState(bytes: Uint8Array): SketchState {
   readCounts(reader, state);
   state.atoms = readAtoms(reader);
   if (flags & layout.FLAG_THRESHOLDS) state.thresholds = readThresholds(reader);
+  if (state.compressed) {
+    state.coarsest = reader.varint("the coarsest compression", compression);
+    if (state.coarsest < LEAST_COARSEST) reader.fail("the coarsest compression is out of range");
+  }
   readEntries(reader, state);
   if (reader.left > 0) reader.fail("bytes are left over");
   const problem = stateProblems(state)[0];
   if (problem !== undefined) reader.fail(`invariant ${problem}`);
   return state;
 }
+
+/** A seal of the least compression. */
+const LEAST_COARSEST = Math.floor(LEAST_COMPRESSION * SEAL_RATIO);
 
 function readHeader(bytes: Uint8Array): { compression: number; flags: number } {
   const fail = (reason: string, offset: number): never => {

@@ -30,6 +30,7 @@ export function encodeState(state: SketchState): Uint8Array {
     writer.varint(count);
   }
   if (state.thresholds !== null) writeThresholds(writer, state.thresholds);
+  if (state.compressed) writer.varint(state.coarsest);
   writer.varint(state.size);
   for (let i = 0; i < state.size; i++) writer.float64(state.means[i]! + 0);
   for (let i = 0; i < state.size; i++) {
