@@ -1,10 +1,10 @@
 import { DEFAULT_DECISION_RULE, type DecisionRule } from "./decision-rule.js";
-import { BAND_CRITICAL } from "./deviance-band.js";
+import { BAND_CRITICAL, type BandConfidence } from "./deviance-band.js";
 import { type DriftPlace, placeOf, sentenceOf } from "./drift-place.js";
 import { countInWords } from "./figures-in-words.js";
 import type { NumericComparison } from "./numeric-comparison.js";
-import { type Standing, standingOf } from "./tolerance.js";
-import { type WatchedShare, watchedShares } from "./watched-share.js";
+import { standingOf } from "./tolerance.js";
+import { furthestFirst, type WatchedShare, watchedShares } from "./watched-share.js";
 
 export interface Verdict {
   readonly state: "holding" | "straining" | "adrift" | "thin";
@@ -16,8 +16,9 @@ export interface Verdict {
 /**
  * What one comparison without a time axis amounts to.
  *
- * Definition  at each watched share: is the effect floor passed (and not within noise, |z| ≥ zWindow), and is the 99.9 % simultaneous band
- *             left (|z| > 4.1)? Both at one place → adrift; only one anywhere → straining; none → holding.
+ * Definition  at each watched share: is the effect floor passed, and is the 99.9 % simultaneous band left (|z| > 4.1)? Both at one place →
+ *             adrift; only one anywhere → straining; none → holding. A floor passed by chance is not held against a feature: for
+ *             straining the 95 % band (|z| > 3.018) must be left there too.
  * Edges       thin when fewer effective events than `minEvents` stand on both sides, unless both conditions hold anyway:
  *             what is plain from few values is said, only "holding" needs many.
  * Source      docs/decision.md
@@ -27,15 +28,17 @@ export function compareVerdict(
   rule: DecisionRule = DEFAULT_DECISION_RULE,
 ): Verdict {
   const judged = watchedShares(comparison, FEWEST)
-    .map((share) => ({ share, standing: standingOf(share, rule) }))
-    .sort((a, b) => Math.abs(b.standing.z) - Math.abs(a.standing.z));
-  const adrift = judged.find(({ standing }) => standing.beyond && leavesBand(standing));
+    .map((share) => ({ share, ...standingOf(share, rule) }))
+    .sort(furthestFirst);
+  const adrift = judged.find(({ floorPassed, z }) => floorPassed && leavesBand(z, 0.999));
   if (adrift) return verdictAt("adrift", adrift);
   const enough = watchedShares(comparison, rule.minEvents);
   if (!enough.some((share) => share.part !== "missing")) {
     return { state: "thin", place: null, sentence: thinSentence(comparison) };
   }
-  const straining = judged.find(({ standing }) => standing.beyond || leavesBand(standing));
+  const straining = judged.find(
+    ({ floorPassed, z }) => leavesBand(z, 0.999) || (floorPassed && leavesBand(z, 0.95)),
+  );
   if (straining) return verdictAt("straining", straining);
   return { state: "holding", place: null, sentence: holdingSentence(comparison) };
 }
@@ -43,15 +46,15 @@ export function compareVerdict(
 /** Below this even a total displacement cannot leave the band. */
 const FEWEST = 1;
 
-function leavesBand(standing: Standing): boolean {
-  return Math.abs(standing.z) > BAND_CRITICAL[0.999];
+function leavesBand(z: number, confidence: BandConfidence): boolean {
+  return Math.abs(z) > BAND_CRITICAL[confidence];
 }
 
 function verdictAt(
   state: "adrift" | "straining",
-  found: { readonly share: WatchedShare; readonly standing: Standing },
+  found: { readonly share: WatchedShare; readonly z: number },
 ): Verdict {
-  return { state, place: placeOf(found.share, found.standing.z), sentence: sentenceOf(found.share) };
+  return { state, place: placeOf(found.share, found.z), sentence: sentenceOf(found.share) };
 }
 
 /** Why a comparison is too thin, in words. */

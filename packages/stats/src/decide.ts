@@ -47,12 +47,8 @@ export function decide(
   const calmWindows = before.state === "adrift" && beyond.length === 0 ? before.calmWindows + 1 : 0;
   const state = nextState(before, beyond, calmWindows, rule);
   const strongest = beyond[0];
-  const place =
-    strongest === undefined
-      ? state === "adrift"
-        ? before.place
-        : null
-      : placeOf(strongest.share, strongest.pooledZ);
+  const lasting = state === "adrift" ? before.place : null;
+  const place = strongest === undefined ? lasting : placeOf(strongest.share, strongest.z);
   const sinceMs = state === before.state && memory !== null ? before.sinceMs : windowEndMs;
   return {
     state,

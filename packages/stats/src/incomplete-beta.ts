@@ -36,10 +36,9 @@ export function betaQuantile(probability: number, a: number, b: number): number 
     if (miss > 0) high = x;
     else low = x;
     const newton = x - (miss * x * (1 - x)) / scaledDensity(x, 1 - x, a, b);
-    const next = newton > low && newton < high ? newton : (low + high) / 2;
     // Near 1 a step matters by what it changes of 1 − x, but none is smaller than one rounding of x.
-    if (Math.abs(next - x) <= Math.max(1e-13 * Math.min(x, 1 - x), Number.EPSILON * x)) return next;
-    x = next;
+    if (Math.abs(newton - x) <= Math.max(1e-13 * Math.min(x, 1 - x), Number.EPSILON * x)) return newton;
+    x = newton > low && newton < high ? newton : (low + high) / 2;
   }
   return x;
 }

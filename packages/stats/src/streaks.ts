@@ -3,7 +3,7 @@ import type { DecisionRule } from "./decision-rule.js";
 import { effectiveEvents } from "./effective-events.js";
 import { signedRootDeviance } from "./signed-root-deviance.js";
 import { type Standing, standingOf } from "./tolerance.js";
-import type { WatchedShare } from "./watched-share.js";
+import { furthestFirst, type WatchedShare } from "./watched-share.js";
 
 /** A share that is beyond tolerance in this window, with the streak that it is in. */
 export interface BeyondShare {
@@ -11,7 +11,7 @@ export interface BeyondShare {
   readonly standing: Standing;
   readonly streak: Streak;
   /** z of the whole streak's events taken together. */
-  readonly pooledZ: number;
+  readonly z: number;
   /** Long and far enough, or far enough at once. */
   readonly fires: boolean;
 }
@@ -35,13 +35,11 @@ export function beyondShares(
       standing,
       windowEndMs,
     );
-    const pooledZ = pooled(streak, share, rule);
-    const sustained = streak.windows >= rule.persistence && Math.abs(pooledZ) >= rule.zPage;
-    beyond.push({ share, standing, streak, pooledZ, fires: sustained || standing.atOnce });
+    const z = pooled(streak, share, rule);
+    const sustained = streak.windows >= rule.persistence && Math.abs(z) >= rule.zPage;
+    beyond.push({ share, standing, streak, z, fires: sustained || standing.atOnce });
   }
-  return beyond.sort(
-    (a, b) => Number(b.fires) - Number(a.fires) || Math.abs(b.pooledZ) - Math.abs(a.pooledZ),
-  );
+  return beyond.sort((a, b) => Number(b.fires) - Number(a.fires) || furthestFirst(a, b));
 }
 
 function extended(

@@ -29,7 +29,7 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
     for (const share of comparison.shares) {
       watched.push({
         key: `p${share.rank}`,
-        part: partOfRank(share.rank),
+        part: partOf(share.rank, share.expected),
         rank: share.rank,
         value: share.value,
         expected: share.expected,
@@ -55,4 +55,22 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
     });
   }
   return watched;
+}
+
+/**
+ * Which part a threshold speaks for: that of its rank, unless repeated values bring the share there up into the body
+ * (a feature with 30 % zeros has its p1 at 0, and .3 of its values at or below).
+ */
+function partOf(rank: number, expected: number): WatchedShare["part"] {
+  return expected >= 0.1 && expected <= 0.9 ? "body" : partOfRank(rank);
+}
+
+/** Orders shares for being spoken of: furthest first; at equal |z| (thresholds that share a value) the body, then the fitting rank. */
+export function furthestFirst(
+  a: { readonly share: WatchedShare; readonly z: number },
+  b: { readonly share: WatchedShare; readonly z: number },
+): number {
+  const misfit = ({ share }: { readonly share: WatchedShare }) =>
+    (share.part === "body" ? 0 : 1) + Math.abs((share.rank ?? share.expected) - share.expected);
+  return Math.abs(b.z) - Math.abs(a.z) || misfit(a) - misfit(b);
 }
