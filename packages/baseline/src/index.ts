@@ -14,5 +14,10 @@ export {
   type BuiltBaseline,
   buildBaseline,
 } from "./build-baseline.js";
+export { buildWindowBaseline, type WindowBaselineRequest } from "./build-window-baseline.js";
+export { FileSides } from "./file-sides.js";
+export type { ColumnKind, FileColumn } from "./files/file-columns.js";
+export { findBaseline } from "./find-baseline.js";
 export { type BaselineSide, loadBaselineSide, sideOfPart, sideOfSketch } from "./load-baseline-side.js";
 export type { OnProgress, ReadProgress } from "./read-progress.js";
+export { LEAST_SLICE_ROWS } from "./slice-plan.js";

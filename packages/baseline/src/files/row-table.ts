@@ -71,7 +71,7 @@ export class RowTable {
     return new RowTable(session, columns, rows);
   }
 
-  /** One column of finite values, for statistics that want them all at once. */
+  /** All rows, batch by batch. */
   async *batches(orderBy: string | null = null): AsyncGenerator<RowBatch> {
     const { features, slices, time } = this.columns;
     const names = [...features.map((_, i) => `f${i}`), ...slices.map((_, i) => `s${i}`)];

@@ -1,0 +1,109 @@
+import { NumericSketch } from "@moorline/sketch";
+import { type NumericSide, numericSideOf } from "@moorline/stats";
+import { DuckdbSession } from "./files/duckdb-session.js";
+import { type FileColumn, listColumns } from "./files/file-columns.js";
+import { matchColumn } from "./files/match-column.js";
+import { type BoundColumn, RowTable } from "./files/row-table.js";
+import { sqlText } from "./files/sql-text.js";
+import { findTrainingFiles, type TrainingFiles } from "./files/training-files.js";
+import { sideOfSketch } from "./load-baseline-side.js";
+import type { OnProgress } from "./read-progress.js";
+
+/** Rows up to which a file's values are compared as they are; beyond, through a sketch of this compression. */
+const MOST_EXACT_ROWS = 5_000_000;
+const SKETCH_COMPRESSION = 2_000;
+
+/** The columns of files, each as a side of a comparison. */
+export class FileSides {
+  readonly columns: readonly FileColumn[];
+  readonly source: string;
+  readonly #session: DuckdbSession;
+  readonly #files: TrainingFiles;
+  #table: RowTable | null = null;
+
+  private constructor(session: DuckdbSession, files: TrainingFiles, columns: readonly FileColumn[]) {
+    this.#session = session;
+    this.#files = files;
+    this.source = files.source;
+    this.columns = columns;
+  }
+
+  static async open(source: string): Promise<FileSides> {
+    const session = await DuckdbSession.open();
+    try {
+      const files = await findTrainingFiles(session, source);
+      return new FileSides(session, files, await listColumns(session, files));
+    } catch (error) {
+      await session.close();
+      throw error;
+    }
+  }
+
+  /** The column that a person means by `name`: its name, its path with dots, or the last part of its path. */
+  find(name: string): FileColumn | null {
+    return matchColumn(this.columns, { name, path: name.split(".") });
+  }
+
+  /** Reads the columns that stand for `features`, and the one to slice by. Every name must be found by `find`. */
+  async load(features: readonly string[], sliceBy: string | null, onProgress?: OnProgress): Promise<void> {
+    const bind = (name: string): BoundColumn => ({ name, column: this.find(name)! });
+    const slices = sliceBy === null ? [] : [bind(sliceBy)];
+    const columns = { features: features.map(bind), slices, time: null };
+    this.#table = await RowTable.load(this.#session, this.#files, columns, onProgress);
+  }
+
+  get rows(): number {
+    return this.#table?.rows ?? 0;
+  }
+
+  /** Values of the slice column, most frequent first. */
+  async sliceValues(limit: number): Promise<readonly string[]> {
+    const found = await this.#session.rows(
+      `select s0, count(*) as n from rows group by 1 order by n desc, 1 limit ${limit}`,
+    );
+    return found.map(([value]) => String(value));
+  }
+
+  /** The values of one feature, of all rows or those with one slice value. */
+  async side(featureIndex: number, sliceValue: string | null): Promise<NumericSide> {
+    const where = sliceValue === null ? "" : ` where s0 = ${sqlText(sliceValue)}`;
+    const result = await this.#session.connection.stream(`select f${featureIndex} from rows${where}`);
+    const take = this.rows <= MOST_EXACT_ROWS ? new ExactValues() : new SketchedValues();
+    for (;;) {
+      const chunk = await result.fetchChunk();
+      if (chunk === null || chunk.rowCount === 0) return take.side();
+      take.add(chunk.getColumnValues(0) as (number | null)[]);
+    }
+  }
+
+  async close(): Promise<void> {
+    await this.#session.close();
+  }
+}
+
+class ExactValues {
+  readonly #values: (number | null)[] = [];
+
+  add(values: readonly (number | null)[]): void {
+    for (const value of values) this.#values.push(value);
+  }
+
+  side(): NumericSide {
+    return numericSideOf(this.#values);
+  }
+}
+
+class SketchedValues {
+  readonly #sketch = new NumericSketch({ compression: SKETCH_COMPRESSION });
+
+  add(values: readonly (number | null)[]): void {
+    for (const value of values) {
+      if (value === null) this.#sketch.addMissing();
+      else this.#sketch.add(value);
+    }
+  }
+
+  side(): NumericSide {
+    return sideOfSketch(this.#sketch);
+  }
+}
