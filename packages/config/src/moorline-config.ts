@@ -78,8 +78,8 @@ export interface FileSourceConfig {
   readonly kind: "file";
   /** Absolute: a relative path is taken from the folder of the config file. */
   readonly paths: readonly string[];
-  /** The paths as the config has them, in the same order: what partitions are called, so that a moved folder keeps its offsets. */
-  readonly names: readonly string[];
+  /** What partitions are called, in the same order: the paths as the config has them, so that a moved folder keeps its offsets. Absent: the paths. */
+  readonly names?: readonly string[];
   /** True: wait for more lines at the end of a file. False: the stream ends there. */
   readonly follow: boolean;
   readonly deadLetterPath: string | null;
