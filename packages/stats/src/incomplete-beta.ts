@@ -1,5 +1,6 @@
 /// <reference path="./jstat.d.ts" />
 import jstat from "jstat";
+import { stirlingRest } from "./log-gamma.js";
 
 /**
  * Regularised incomplete beta function I_x(a, b), the CDF of the beta distribution.
@@ -71,20 +72,6 @@ function scaledDensity(x: number, y: number, a: number, b: number): number {
 function logRatio(k: number, mean: number): number {
   const difference = (k - mean) / mean;
   return Math.abs(difference) < 0.5 ? Math.log1p(difference) : Math.log(k / mean);
-}
-
-/** ln Γ(z + 1) − (z + ½) ln z + z − ½ ln 2π: what Stirling's formula leaves. */
-function stirlingRest(z: number): number {
-  let shifted = z;
-  let rest = 0;
-  // The asymptotic series needs z ≥ 15; climb there by Γ(z + 1) = z Γ(z).
-  while (shifted < 15) {
-    rest += (shifted + 0.5) * Math.log1p(1 / shifted) - 1;
-    shifted += 1;
-  }
-  const square = shifted * shifted;
-  const series = 1 / 12 - (1 / 360 - (1 / 1260 - (1 / 1680 - 1 / 1188 / square) / square) / square) / square;
-  return rest + series / shifted;
 }
 
 const SMALLEST = 1e-300;

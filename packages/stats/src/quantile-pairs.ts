@@ -1,7 +1,7 @@
 import { MoorlineError } from "@moorline/errors";
 import type { CdfView } from "./cdf-view.js";
-import { BAND_CRITICAL, type BandConfidence, shareRange } from "./deviance-band.js";
-import { effectiveEvents } from "./effective-events.js";
+import { type CountRange, countRange } from "./count-range.js";
+import type { BandConfidence } from "./deviance-band.js";
 import { GRID_RANKS } from "./grid-ranks.js";
 import { quantileOf, valueAtEvents } from "./quantile-of.js";
 
@@ -30,7 +30,7 @@ export interface QuantilePairsOptions {
  * Quantile pairs with a simultaneous confidence band.
  *
  * Definition  pair at rank p: (Q_F(p), Q_G(p)); a value y is consistent with rank p when L ≤ #{Y ≤ y} ≤ U, that is, the band is
- *             [Y(L), Y(U+1)] with L = ⌈m·g−⌉, U = ⌊m·g+⌋ and |z(g±, p, M)| = critical; both sides' rank errors widen it.
+ *             [Y(L), Y(U+1)], with L and U from countRange; both sides' rank errors widen it.
  * Shape       one pair a rank, in the order of the ranks.
  * Accuracy    coverage measured: .94–.99 for the nominal .95 (docs/quantile-pairs.md).
  * Edges       a rank with n·min(p, 1 − p) < 1 on a side has null there and is marked `beyondData`; at an atom the band is closed on
@@ -48,23 +48,17 @@ export function quantilePairs(
   if (baseline.n === 0 || production.n === 0) {
     throw new MoorlineError("MOORLINE_INPUT_EMPTY_SAMPLE", { statistic: "quantile pairs" });
   }
-  const critical = BAND_CRITICAL[options.confidence ?? 0.999];
-  const effective = effectiveEvents(baseline.n, production.n, options.designEffect);
-  return (options.ranks ?? GRID_RANKS).map((rank) =>
-    pairAt(rank, baseline, production, { critical, effective }),
-  );
+  const band = { confidence: options.confidence ?? 0.999, designEffect: options.designEffect ?? 1 };
+  return (options.ranks ?? GRID_RANKS).map((rank) => {
+    const range = countRange(baseline, production, rank, band);
+    return pairAt(rank, baseline, production, range);
+  });
 }
 
-function pairAt(
-  rank: number,
-  baseline: CdfView,
-  production: CdfView,
-  band: { readonly critical: number; readonly effective: number },
-): QuantilePair {
-  const range = shareRange(rank, band.effective, band.critical);
-  const error = baseline.rankErrorAt(rank) + production.rankErrorAt(rank);
-  const lowest = Math.ceil(production.n * (range.low - error) - COUNT_SLACK);
-  const highest = Math.floor(production.n * (range.high + error) + COUNT_SLACK);
+function pairAt(rank: number, baseline: CdfView, production: CdfView, range: CountRange): QuantilePair {
+  const error = (baseline.rankErrorAt(rank) + production.rankErrorAt(rank)) * production.n;
+  const lowest = Math.ceil(range.lowest - error);
+  const highest = Math.floor(range.highest + error);
   const pair = {
     rank,
     baseline: supports(baseline, rank) ? quantileOf(baseline, rank) : null,
@@ -75,10 +69,7 @@ function pairAt(
   return pair.baseline === null || pair.production === null ? { ...pair, beyondData: true } : pair;
 }
 
-/** Keeps a count that is whole but for rounding from being moved to the next one. */
-const COUNT_SLACK = 1e-9;
-
 /** Is at least one event expected beyond the rank? The slack lets 1,000 values support rank .999 in spite of rounding. */
 function supports(view: CdfView, rank: number): boolean {
-  return view.n * Math.min(rank, 1 - rank) >= 1 - COUNT_SLACK;
+  return view.n * Math.min(rank, 1 - rank) >= 1 - 1e-9;
 }

@@ -1,8 +1,8 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { cdfOf } from "../src/cdf-of.js";
+import { countRange } from "../src/count-range.js";
 import { shareRange } from "../src/deviance-band.js";
-import { effectiveEvents } from "../src/effective-events.js";
 import { GRID_RANKS } from "../src/grid-ranks.js";
 import { quantilePairs } from "../src/quantile-pairs.js";
 import { bruteQuantile7 } from "./kit/brute-force.js";
@@ -31,9 +31,10 @@ describe("quantilePairs(baseline, production)", () => {
     const b = random.sample(900);
     const sorted = [...b].sort((x, y) => x - y);
     for (const pair of pairsOf(a, b)) {
-      const range = shareRange(pair.rank, effectiveEvents(3000, 900), 4.1);
-      const lowest = Math.ceil(900 * range.low);
-      const highest = Math.floor(900 * range.high);
+      const { lowest, highest } = countRange(cdfOf(a), cdfOf(b), pair.rank, {
+        confidence: 0.999,
+        designEffect: 1,
+      });
       expect(pair.low).toBe(lowest === 0 ? null : sorted[lowest - 1]);
       expect(pair.high).toBe(highest === 900 ? null : sorted[highest]);
     }
