@@ -1,5 +1,6 @@
 /** Sums of distances are kept this much smaller, so that they overflow only for clusters wider than MAX_VALUE. */
 const SUM_SCALE: f64 = 1.0 / 1099511627776.0;
+const SUM_UNSCALE: f64 = 1099511627776.0;
 
 /** One unit of k for a cluster that starts after `done`: the unit at the start and half of its change over its own width. */
 function unitAfter(done: f64, perEvent: f64, total: f64, middle: f64, tail: f64): f64 {
@@ -14,7 +15,7 @@ function unitAfter(done: f64, perEvent: f64, total: f64, middle: f64, tail: f64)
 }
 
 function centreOf(first: f64, last: f64, sum: f64, weight: f64): f64 {
-  const centre = first + sum / weight / SUM_SCALE;
+  const centre = first + (sum / weight) * SUM_UNSCALE;
   if (!(centre < Infinity)) return first * 0.5 + last * 0.5;
   return centre > last ? last : centre;
 }
@@ -100,8 +101,11 @@ function pass<D>(
   let out = descending ? outMeans + outEnd - 8 : outMeans;
   const entriesEnd = descending ? means - 8 : means + ((<usize>entryCount) << 3);
   const valuesEnd = descending ? values - 8 : values + ((<usize>valueCount) << 3);
-  let mean: f64 = entryCount > 0 ? (descending ? -load<f64>(entry) : load<f64>(entry)) : Infinity;
-  let value: f64 = valueCount > 0 ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
+  // Infinity stands after the last value and entry, so that nobody need ask whether there is another.
+  store<f64>(entriesEnd, descending ? -Infinity : Infinity);
+  store<f64>(valuesEnd, descending ? -Infinity : Infinity);
+  let mean: f64 = descending ? -load<f64>(entry) : load<f64>(entry);
+  let value: f64 = descending ? -load<f64>(next) : load<f64>(next);
   let count = 0;
   let done: f64 = 0;
   let edge = 0;
@@ -117,10 +121,10 @@ function pass<D>(
       pure = weight > 0.0;
       if (!pure) weight = -weight;
       entry += step;
-      mean = entry !== entriesEnd ? (descending ? -load<f64>(entry) : load<f64>(entry)) : Infinity;
+      mean = descending ? -load<f64>(entry) : load<f64>(entry);
     } else {
       next += step;
-      value = next !== valuesEnd ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
+      value = descending ? -load<f64>(next) : load<f64>(next);
     }
     let limit = unitAfter(done, perEvent, total, middle, tail);
     if (edgeCount > 0) {
@@ -137,21 +141,25 @@ function pass<D>(
       // The run of values before the next entry, as far as there is room.
       const room = <i32>min(limit - weight, <f64>valueCount);
       let left = room;
+      let run: f64 = 0;
       while (left > 0 && value < mean) {
-        sum += (value - first) * SUM_SCALE;
+        run += value - first;
         last = value;
         left--;
         next += step;
-        value = next !== valuesEnd ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
+        value = descending ? -load<f64>(next) : load<f64>(next);
       }
-      if (room > 0) weight += <f64>(room - left);
-      pure = pure && last === first;
+      if (left < room) {
+        weight += <f64>(room - left);
+        sum += run * SUM_SCALE;
+        pure = pure && last === first;
+      }
       if (value < mean) {
         if (!(pure && value === first)) break;
         // Equal values stay together, whatever they weigh.
         weight += 1.0;
         next += step;
-        value = next !== valuesEnd ? (descending ? -load<f64>(next) : load<f64>(next)) : Infinity;
+        value = descending ? -load<f64>(next) : load<f64>(next);
         continue;
       }
       if (entry === entriesEnd) break;
@@ -165,7 +173,7 @@ function pass<D>(
       pure = same;
       last = mean;
       entry += step;
-      mean = entry !== entriesEnd ? (descending ? -load<f64>(entry) : load<f64>(entry)) : Infinity;
+      mean = descending ? -load<f64>(entry) : load<f64>(entry);
     }
     const centre = centreOf(first, last, sum, weight);
     store<f64>(out, (descending ? -centre : centre) + 0.0);

@@ -17,9 +17,10 @@ export const MAX_ATOMS = 32;
 
 /** The values that a compressed sketch counts exactly, outside its digest; ascending. */
 export class AtomTable {
-  rows: TableAtom[];
+  rows: TableAtom[] = [];
 
   constructor(known: readonly number[]) {
+    if (known.length === 0) return;
     const values = [...new Set(known.map((value) => value + 0))].sort((a, b) => a - b);
     if (values.length > MAX_ATOMS || !values.every(Number.isFinite)) {
       throw new MoorlineError("MOORLINE_INPUT_SKETCH_ATOMS", { limit: MAX_ATOMS });

@@ -1,3 +1,4 @@
+import type { Kernel } from "./kernel/kernel.js";
 import { lowerBound, upperBound } from "./threshold-counter.js";
 
 /** How many edges a pass respects; each costs some twenty clusters. */
@@ -15,51 +16,50 @@ const REACH = 4;
 /** Of a gap that new values fall into, the widest part stays an edge when it is at least this share of it. */
 const LEAST_PART = 0.5;
 
-interface Entries {
-  readonly means: Float64Array;
-  readonly weights: Float64Array;
-  readonly size: number;
-}
-
 interface Gap {
   readonly after: number;
   readonly ratio: number;
 }
 
 /**
- * Ranks, in events, of the widest gaps in the distribution of entries and sorted values: between far modes there is nothing,
- * and a cluster that reached over would stand in it. Relative to the scale beside them, at most MOST_EDGES, ascending.
+ * Ranks, in events, of the widest gaps in the distribution of the kernel's entries and sorted values: between far modes there is
+ * nothing, and a cluster that reached over would stand in it. Relative to the scale beside them, at most MOST_EDGES, ascending.
  */
-export function findEdges(entries: Entries, values: Float64Array, valueCount: number): number[] {
-  const gaps = findGaps(entries);
-  if (gaps.length === 0) return [];
-  if (gaps.length > MOST_EDGES) {
-    gaps.sort((a, b) => b.ratio - a.ratio || a.after - b.after);
-    gaps.length = MOST_EDGES;
-    gaps.sort((a, b) => a.after - b.after);
-  }
+export function findEdges(kernel: Kernel, entryCount: number, valueCount: number): readonly number[] {
+  if (kernel.findGap(0, entryCount, REACH, EDGE_RATIO) < 0) return NO_EDGES;
+  const { means, weights, values } = kernel;
   const edges: number[] = [];
   let entryRank = 0;
   let entry = 0;
-  for (const { after } of gaps) {
-    for (; entry <= after; entry++) entryRank += Math.abs(entries.weights[entry]!);
-    const below = valuesBelowGap(entries.means[after]!, entries.means[after + 1]!, values, valueCount);
+  for (const { after } of widestGaps(kernel, entryCount)) {
+    for (; entry <= after; entry++) entryRank += Math.abs(weights[entry]!);
+    const below = valuesBelowGap(means[after]!, means[after + 1]!, values, valueCount);
     if (below !== null) edges.push(entryRank + below);
   }
   return edges;
 }
 
-function findGaps({ means, size }: Entries): Gap[] {
+const NO_EDGES: readonly number[] = [];
+
+/** The gaps of the greatest ratios, in the order of the entries. */
+function widestGaps(kernel: Kernel, entryCount: number): Gap[] {
+  const { means } = kernel;
   const gaps: Gap[] = [];
-  for (let i = REACH; i + REACH + 1 < size; i++) {
-    const gap = means[i + 1]! - means[i]!;
-    const before = means[i]! - means[i - REACH]!;
-    if (!(gap > EDGE_RATIO * before)) continue;
-    const beyond = means[i + 1 + REACH]! - means[i + 1]!;
-    const scale = Math.max(before, beyond);
-    if (gap > EDGE_RATIO * scale) gaps.push({ after: i, ratio: scale > 0 ? gap / scale : Number.MAX_VALUE });
+  for (let from = 0; ; ) {
+    const after = kernel.findGap(from, entryCount, REACH, EDGE_RATIO);
+    if (after < 0) break;
+    const low = means[after]!;
+    const high = means[after + 1]!;
+    const scale = Math.max(low - means[after - REACH]!, means[after + 1 + REACH]! - high);
+    gaps.push({
+      after,
+      ratio: scale > 0 ? Math.min(Number.MAX_VALUE, (high - low) / scale) : Number.MAX_VALUE,
+    });
+    from = after + 1;
   }
-  return gaps;
+  if (gaps.length <= MOST_EDGES) return gaps;
+  gaps.sort((a, b) => b.ratio - a.ratio || a.after - b.after);
+  return gaps.slice(0, MOST_EDGES).sort((a, b) => a.after - b.after);
 }
 
 /** How many values lie below what is left of a gap, or null when nothing wide is left of it. */

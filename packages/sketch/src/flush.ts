@@ -17,7 +17,7 @@ export function flushSorted(state: SketchState, kernel: Kernel, count: number): 
   state.thresholds?.countSorted(values, count);
   state.sealed = false;
   if (state.compressed) {
-    const left = collectAtoms(state, values, count);
+    const left = collectAtoms(state, kernel, count);
     compress(state, kernel, left, state.compression);
     return;
   }
@@ -28,20 +28,31 @@ export function flushSorted(state: SketchState, kernel: Kernel, count: number): 
 }
 
 /** Gives up exactness: the values that repeat most become atoms, the rest clusters. */
-export function leaveExact(state: SketchState, kernel: Kernel): void {
+function leaveExact(state: SketchState, kernel: Kernel): void {
   state.compressed = true;
-  promoteRuns(state);
+  promoteRuns(state, state);
   compress(state, kernel, 0, state.compression);
 }
 
-/** One merging pass over the entries and kernel.values[0, valueCount). Turns the direction of the next. */
+/** One merging pass over the state's entries and kernel.values[0, valueCount). */
 export function compress(state: SketchState, kernel: Kernel, valueCount: number, compression: number): void {
   loadEntries(state, kernel);
+  compressLoaded(state, kernel, state.size, valueCount, compression);
+}
+
+/** One merging pass over the kernel's entries and values, which become the state's. Turns the direction of the next. */
+export function compressLoaded(
+  state: SketchState,
+  kernel: Kernel,
+  entryCount: number,
+  valueCount: number,
+  compression: number,
+): void {
   const total = state.finite - state.atoms.count;
-  const edges = findEdges(state, kernel.values, valueCount);
+  const edges = findEdges(kernel, entryCount, valueCount);
   const plan = passPlan(compression, state.compression, total, edges, state.descending);
-  const count = kernel.mergePass(state.size, valueCount, plan);
-  const start = state.descending ? state.size + valueCount - count : 0;
+  const count = kernel.mergePass(entryCount, valueCount, plan);
+  const start = state.descending ? entryCount + valueCount - count : 0;
   state.takeEntries(kernel.outMeans, kernel.outWeights, start, count);
   state.descending = !state.descending;
   state.coarsest = Math.min(state.coarsest, compression);

@@ -1,6 +1,7 @@
 import { MAX_ATOMS } from "./atom-table.js";
 import { mergeRuns } from "./exact-runs.js";
-import { leaveExact } from "./flush.js";
+import { compressLoaded } from "./flush.js";
+import { promoteRuns } from "./flush-atoms.js";
 import type { Kernel } from "./kernel/kernel.js";
 import { SketchState } from "./sketch-state.js";
 import { piecesPerCluster, spreadClusters } from "./spread-clusters.js";
@@ -87,9 +88,17 @@ function mergeEntries(merged: SketchState, states: readonly SketchState[], kerne
     merged.compressed = true;
     merged.coarsest = Math.min(merged.coarsest, state.coarsest);
   }
-  const runs = merged.compressed ? joinPureRuns(kernel, size) : mergeRuns(kernel, size, 0);
-  merged.takeEntries(kernel.outMeans, kernel.outWeights, 0, runs);
-  if (merged.compressed || runs > merged.exactLimit) leaveExact(merged, kernel);
+  if (!merged.compressed) {
+    const runs = mergeRuns(kernel, size, 0);
+    if (runs <= merged.exactLimit) {
+      merged.takeEntries(kernel.outMeans, kernel.outWeights, 0, runs);
+      return;
+    }
+    merged.compressed = true;
+  }
+  const entries = { means: kernel.means, weights: kernel.weights, size: joinPureRuns(kernel, size) };
+  promoteRuns(merged, entries);
+  compressLoaded(merged, kernel, entries.size, 0, merged.compression);
 }
 
 function gatherEntries(states: readonly SketchState[], compression: number, kernel: Kernel): number {
@@ -117,20 +126,21 @@ function gatherEntries(states: readonly SketchState[], compression: number, kern
   return at;
 }
 
-/** Joins neighbouring pure entries of one value, in the out arrays; mixed entries stay as they are. */
+/** Joins neighbouring pure entries of one value, in place; mixed entries stay as they are. */
 function joinPureRuns(kernel: Kernel, size: number): number {
-  const { means, weights, outMeans, outWeights } = kernel;
+  const { means, weights } = kernel;
   let count = 0;
   let lastPure = -1; // where the last pure entry was written
   for (let i = 0; i < size; i++) {
-    const pure = weights[i]! > 0;
-    if (pure && lastPure >= 0 && outMeans[lastPure] === means[i]) {
-      outWeights[lastPure] = outWeights[lastPure]! + weights[i]!;
+    const mean = means[i]!;
+    const weight = weights[i]!;
+    if (weight > 0 && lastPure >= 0 && means[lastPure] === mean) {
+      weights[lastPure] = weights[lastPure]! + weight;
       continue;
     }
-    outMeans[count] = means[i]!;
-    outWeights[count] = weights[i]!;
-    if (pure) lastPure = count;
+    means[count] = mean;
+    weights[count] = weight;
+    if (weight > 0) lastPure = count;
     count++;
   }
   return count;

@@ -1,7 +1,7 @@
 import { MoorlineError } from "@moorline/errors";
 import type { Atom } from "./atom-table.js";
 import { type CdfKnots, cdfKnotsOf } from "./cdf-knots.js";
-import { cdfAt, cdfBelowAt, quantileAt } from "./cdf-lookup.js";
+import { cdfAt, cdfBelowAt } from "./cdf-lookup.js";
 import { stateProblems } from "./check-invariants.js";
 import { decodeState } from "./codec/decode-sketch.js";
 import { encodeState } from "./codec/encode-sketch.js";
@@ -11,6 +11,7 @@ import { activeKernel } from "./kernel/active-kernel.js";
 import type { KindCounts } from "./kind-counts.js";
 import { listAtoms } from "./list-atoms.js";
 import { mergeStates } from "./merge-states.js";
+import { QuantileIndex } from "./quantile-index.js";
 import { sealState } from "./seal.js";
 import { SketchState } from "./sketch-state.js";
 import type { ThresholdCounts, ThresholdSet } from "./threshold-counter.js";
@@ -43,12 +44,13 @@ export interface SketchOptions {
  * Reading never changes what a later value does: flush boundaries depend on the sequence of values alone.
  */
 export class NumericSketch {
-  readonly #state: SketchState;
+  #state: SketchState;
   #buffer: Float64Array = new Float64Array(0);
   #buffered = 0;
   /** State with the buffer flushed, and its knots; forgotten at the next value. */
   #view: SketchState | null = null;
   #knots: CdfKnots | null = null;
+  #quantiles: QuantileIndex | null = null;
 
   constructor(options: SketchOptions = {}) {
     const compression = checkCompression(options.compression ?? DEFAULT_COMPRESSION);
@@ -57,7 +59,7 @@ export class NumericSketch {
 
   static #of(state: SketchState): NumericSketch {
     const sketch = new NumericSketch({ compression: state.compression });
-    Object.assign(sketch.#state, state);
+    sketch.#state = state;
     return sketch;
   }
 
@@ -153,7 +155,8 @@ export class NumericSketch {
    */
   quantile(rank: number): number {
     if (!(rank >= 0 && rank <= 1)) throw new MoorlineError("MOORLINE_INPUT_RANK_RANGE", { rank });
-    return quantileAt(this.#filledKnots(), rank);
+    this.#quantiles ??= new QuantileIndex(this.#filledKnots());
+    return this.#quantiles.valueAt(rank);
   }
 
   /** Share of events ≤ value (right-continuous). Throws like quantile(). */
@@ -197,7 +200,7 @@ export class NumericSketch {
   sizeInBytes(): number {
     const state = this.#state;
     const view = this.#view === null || this.#view === state ? 0 : 16 * this.#view.means.length;
-    const knots = this.#knots === null ? 0 : 24 * this.#knots.values.length;
+    const knots = this.#knots === null ? 0 : 40 * this.#knots.values.length;
     return (
       400 + 16 * state.means.length + 8 * this.#buffer.length + 64 * state.atoms.rows.length + view + knots
     );
@@ -212,6 +215,7 @@ export class NumericSketch {
   #forgetView(): void {
     this.#view = null;
     this.#knots = null;
+    this.#quantiles = null;
   }
 
   /** The state as if the buffer were flushed; the buffer stays, so that reading moves no flush boundary. */

@@ -43,7 +43,19 @@ export class SketchState {
 
   clone(): SketchState {
     const copy = new SketchState(this.compression, null, []);
-    Object.assign(copy, this);
+    copy.finite = this.finite;
+    copy.missing = this.missing;
+    copy.nan = this.nan;
+    copy.positiveInfinity = this.positiveInfinity;
+    copy.negativeInfinity = this.negativeInfinity;
+    copy.min = this.min;
+    copy.max = this.max;
+    copy.sum = this.sum;
+    copy.size = this.size;
+    copy.compressed = this.compressed;
+    copy.coarsest = this.coarsest;
+    copy.sealed = this.sealed;
+    copy.descending = this.descending;
     copy.means = this.means.slice(0, this.size);
     copy.weights = this.weights.slice(0, this.size);
     copy.atoms = this.atoms.clone();

@@ -16,6 +16,10 @@ export interface Kernel {
   reserve(valueCount: number, entryCount: number): void;
   /** Sorts values[0, count) ascending, −0 as 0, and says whether all are finite; if not, the order is unspecified. */
   sortValues(count: number): boolean;
+  /** The first i of from, from + stride, … below count with values[i] = values[i − stride]; −1 when there is none. */
+  findRepeat(from: number, count: number, stride: number): number;
+  /** The first i ≥ from so that means[i + 1] − means[i] is more than ratio times the `reach` steps before it and after it, or −1. */
+  findGap(from: number, entryCount: number, reach: number, ratio: number): number;
   /** The sum of values[0, count), in four lanes. */
   sumValues(count: number): number;
   /** Sorts the entries [0, count) by mean, stable. */
@@ -42,3 +46,4 @@ export interface PassPlan extends PassScale {
 
 /** Sums of distances are kept this much smaller, so that they overflow only for clusters wider than MAX_VALUE. */
 export const SUM_SCALE = 2 ** -40;
+export const SUM_UNSCALE = 2 ** 40;

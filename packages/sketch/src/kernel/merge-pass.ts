@@ -1,4 +1,4 @@
-import { type Kernel, type PassPlan, SUM_SCALE } from "./kernel.js";
+import { type Kernel, type PassPlan, SUM_SCALE, SUM_UNSCALE } from "./kernel.js";
 
 type Arrays = Pick<Kernel, "values" | "means" | "weights" | "outMeans" | "outWeights">;
 
@@ -27,15 +27,17 @@ export function mergePass(arrays: Arrays, entryCount: number, valueCount: number
   let first = 0;
   let last = 0;
   let weight = 0; // of the open cluster; 0 = none is open
-  let sum = 0;
+  let sum = 0; // of weighted distances from the first value, times SUM_SCALE
+  let run = 0; // the same of the values since the last entry, not yet scaled and in the sum
   let pure = true;
   let limit = 0;
   while (entriesLeft + valuesLeft > 0) {
     const mean = entriesLeft > 0 ? step * means[entry]! : Number.POSITIVE_INFINITY;
     const value = valuesLeft > 0 ? step * values[next]! : Number.POSITIVE_INFINITY;
+    const isValue = value < mean;
     let x = value;
     let w = 1;
-    if (mean <= value) {
+    if (!isValue) {
       x = mean;
       w = weights[entry]!;
       entry += step;
@@ -49,13 +51,18 @@ export function mergePass(arrays: Arrays, entryCount: number, valueCount: number
     const same: boolean = pure && single && x === first;
     if (weight + w <= limit || (same && weight > 0)) {
       weight += w;
-      sum += (x - first) * (w * SUM_SCALE);
+      if (isValue) run += x - first;
+      else {
+        sum += run * SUM_SCALE;
+        run = 0;
+        sum += (x - first) * (w * SUM_SCALE);
+      }
       pure = same;
       last = x;
       continue;
     }
     if (weight > 0) {
-      outMeans[out] = step * centreOf(first, last, sum, weight) + 0;
+      outMeans[out] = step * centreOf(first, last, sum + run * SUM_SCALE, weight) + 0;
       outWeights[out] = pure ? weight : -weight;
       out += step;
       done += weight;
@@ -64,11 +71,12 @@ export function mergePass(arrays: Arrays, entryCount: number, valueCount: number
     last = x;
     weight = w;
     sum = 0;
+    run = 0;
     pure = single;
     limit = limits.after(done);
   }
   if (weight > 0) {
-    outMeans[out] = step * centreOf(first, last, sum, weight) + 0;
+    outMeans[out] = step * centreOf(first, last, sum + run * SUM_SCALE, weight) + 0;
     outWeights[out] = pure ? weight : -weight;
     out += step;
   }
@@ -76,7 +84,7 @@ export function mergePass(arrays: Arrays, entryCount: number, valueCount: number
 }
 
 function centreOf(first: number, last: number, sum: number, weight: number): number {
-  const centre = first + sum / weight / SUM_SCALE;
+  const centre = first + (sum / weight) * SUM_UNSCALE;
   if (!(centre < Number.POSITIVE_INFINITY)) return first * 0.5 + last * 0.5;
   return Math.min(centre, last);
 }

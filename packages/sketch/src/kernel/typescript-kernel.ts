@@ -32,6 +32,22 @@ export class TypescriptKernel implements Kernel {
     return true;
   }
 
+  findRepeat(from: number, count: number, stride: number): number {
+    const { values } = this;
+    for (let i = from; i < count; i += stride) if (values[i] === values[i - stride]) return i;
+    return -1;
+  }
+
+  findGap(from: number, entryCount: number, reach: number, ratio: number): number {
+    const { means } = this;
+    for (let i = Math.max(from, reach); i + reach + 1 < entryCount; i++) {
+      const width = means[i + 1]! - means[i]!;
+      if (!(width > ratio * (means[i]! - means[i - reach]!))) continue;
+      if (width > ratio * (means[i + 1 + reach]! - means[i + 1]!)) return i;
+    }
+    return -1;
+  }
+
   sumValues(count: number): number {
     return sumValues(this.values, count);
   }

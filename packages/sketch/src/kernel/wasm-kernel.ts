@@ -6,6 +6,8 @@ interface KernelExports {
   readonly memory: { readonly buffer: ArrayBuffer; grow(pages: number): number };
   heapBase(): number;
   sortValues(values: number, scratch: number, count: number): number;
+  findRepeat(values: number, from: number, count: number, stride: number): number;
+  findGap(means: number, from: number, entryCount: number, reach: number, ratio: number): number;
   sumValues(values: number, count: number): number;
   sortEntries(means: number, weights: number, scratch1: number, scratch2: number, count: number): void;
   mergePass(
@@ -30,6 +32,8 @@ interface KernelExports {
 const PAGE_BYTES = 65_536;
 const FIRST_CAPACITY = 4096;
 const MOST_EDGES = 64;
+/** Between two arrays: the merging pass puts Infinity before the first or after the last element. */
+const PAD_BYTES = 16;
 
 /** The kernel in WebAssembly: the same bytes as the TypeScript one, several times faster at sorting. */
 export class WasmKernel implements Kernel {
@@ -58,6 +62,14 @@ export class WasmKernel implements Kernel {
   sortValues(count: number): boolean {
     // The sorted values' scratch lies in the out arrays, which nobody has written yet.
     return this.#exports.sortValues(this.values.byteOffset, this.outMeans.byteOffset, count) !== 0;
+  }
+
+  findRepeat(from: number, count: number, stride: number): number {
+    return this.#exports.findRepeat(this.values.byteOffset, from, count, stride);
+  }
+
+  findGap(from: number, entryCount: number, reach: number, ratio: number): number {
+    return this.#exports.findGap(this.means.byteOffset, from, entryCount, reach, ratio);
   }
 
   sumValues(count: number): number {
@@ -94,12 +106,12 @@ export class WasmKernel implements Kernel {
   /** Lays the arrays one after another into the memory, which grows if it must. */
   #lay(valueCount: number, entryCount: number): void {
     const { memory } = this.#exports;
-    const end = this.#edgesAt + 8 * (MOST_EDGES + valueCount + 4 * entryCount);
+    const end = this.#edgesAt + 8 * (MOST_EDGES + valueCount + 4 * entryCount) + 6 * PAD_BYTES;
     if (end > memory.buffer.byteLength) memory.grow(Math.ceil((end - memory.buffer.byteLength) / PAGE_BYTES));
     let at = this.#edgesAt;
     const take = (count: number): Float64Array<ArrayBuffer> => {
       const array = new Float64Array(memory.buffer, at, count);
-      at += array.byteLength;
+      at += array.byteLength + PAD_BYTES;
       return array;
     };
     this.#edges = take(MOST_EDGES);
