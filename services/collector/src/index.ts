@@ -1,1 +1,1 @@
-export {};
+export { type CollectorOptions, startCollector } from "./start-collector.js";

@@ -1,0 +1,42 @@
+import { setTimeout as sleep } from "node:timers/promises";
+import { isMoorlineError } from "@moorline/errors";
+
+export interface RetryPlan {
+  /** Called after each failure that is tried again. */
+  onFailure(error: unknown, attempt: number, waitMs: number): void;
+  /** True: give up and throw the last failure. */
+  isOver(): boolean;
+  /** Called while waiting; what it throws ends the retries. */
+  meanwhile?: () => Promise<void>;
+}
+
+const FIRST_WAIT_MS = 100;
+const LONGEST_WAIT_MS = 5_000;
+/** Waits are cut into steps of this length, so that heartbeats go on and a stop is seen. */
+const STEP_MS = 500;
+
+/**
+ * Does something that hangs on an outside system until it works. Waits double up to 5 s, each between half and all of its length at
+ * random, so that collectors that lost the same store do not come back in step. Errors that no waiting mends are thrown at once.
+ */
+export async function retryUpstream<T>(action: () => Promise<T>, plan: RetryPlan): Promise<T> {
+  for (let attempt = 1; ; attempt++) {
+    try {
+      return await action();
+    } catch (error) {
+      if (!isMoorlineError(error) || !error.retryable || plan.isOver()) throw error;
+      const longestMs = Math.min(LONGEST_WAIT_MS, FIRST_WAIT_MS * 2 ** Math.min(attempt - 1, 10));
+      const waitMs = Math.round(longestMs * (0.5 + Math.random() / 2));
+      plan.onFailure(error, attempt, waitMs);
+      await waitInSteps(waitMs, plan);
+      if (plan.isOver()) throw error;
+    }
+  }
+}
+
+async function waitInSteps(waitMs: number, plan: RetryPlan): Promise<void> {
+  for (let left = waitMs; left > 0 && !plan.isOver(); left -= STEP_MS) {
+    await sleep(Math.min(STEP_MS, left));
+    await plan.meanwhile?.();
+  }
+}
