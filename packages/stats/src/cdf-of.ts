@@ -9,7 +9,7 @@ import type { CdfView } from "./cdf-view.js";
  * Cost    O(n log n) time, O(n) memory.
  *
  * @throws MOORLINE_INPUT_VALUE_NOT_FINITE when a value is NaN or infinite
- * @example cdfOf([3, 1, 3]).upTo // => Float64Array [1, 3]
+ * @example [...cdfOf([3, 1, 3]).upTo] // => [1, 3]
  */
 export function cdfOf(values: ArrayLike<number>): CdfView {
   const sorted = Float64Array.from(values);

@@ -12,7 +12,7 @@ import { betaQuantile } from "./incomplete-beta.js";
  * Source      Clopper & Pearson 1934, doi:10.1093/biomet/26.4.404.
  *
  * @throws MOORLINE_INPUT_STATISTIC_DOMAIN when k is not in [0, n] or n is not positive
- * @example clopperPearson(0, 500)[1] // => 0.00735…
+ * @example clopperPearson(10, 10)[1] // => 1
  */
 export function clopperPearson(
   events: number,

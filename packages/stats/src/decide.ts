@@ -20,8 +20,9 @@ export interface Decision {
  * The state of a feature after one more window.
  *
  * Definition  A window is beyond tolerance when at some watched share the effect floor is passed and |z| ≥ zWindow.
- *             `straining` while it is. `adrift` when one share was beyond in one direction for `persistence` consecutive windows and its
- *             pooled |z| reaches zPage, or when one window is far enough at once. `adrift` ends after `releaseAfter` consecutive windows within.
+ *             `straining` while one is and the pooled |z| of its streak reaches zStrain. `adrift` when one share was beyond in one
+ *             direction for `persistence` consecutive windows and its pooled |z| reaches zPage, or when one window is far enough at
+ *             once. `adrift` ends after `releaseAfter` consecutive windows within tolerance.
  *             A `thin` window neither advances nor clears anything, and does not end `adrift`.
  * Shape       memory: null at first and after a change of the baseline; windows in order, not overlapping, each once.
  * Edges       pure: the same arguments give the same decision, and memory goes through JSON unchanged. A window in which every value is missing
@@ -46,7 +47,7 @@ export function decide(
   if (thin && beyond.length === 0) return thinDecision(before, streaks, comparison);
   const calmWindows = before.state === "adrift" && beyond.length === 0 ? before.calmWindows + 1 : 0;
   const state = nextState(before, beyond, calmWindows, rule);
-  const strongest = beyond[0];
+  const strongest = state === "holding" ? undefined : beyond[0];
   const lasting = state === "adrift" ? before.place : null;
   const place = strongest === undefined ? lasting : placeOf(strongest.share, strongest.z);
   const sinceMs = state === before.state && memory !== null ? before.sinceMs : windowEndMs;
@@ -66,7 +67,7 @@ function nextState(
 ): DecisionMemory["state"] {
   if (beyond.some(({ fires }) => fires)) return "adrift";
   if (before.state === "adrift" && calmWindows < rule.releaseAfter) return "adrift";
-  return beyond.length > 0 ? "straining" : "holding";
+  return beyond.some(({ z }) => Math.abs(z) >= rule.zStrain) ? "straining" : "holding";
 }
 
 function thinDecision(

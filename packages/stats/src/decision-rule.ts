@@ -22,6 +22,8 @@ export interface DecisionRule {
   readonly zPage: number;
   /** In each of these windows |z| must reach this. */
   readonly zWindow: number;
+  /** Pooled |z| from which a share beyond tolerance shows as straining: the 95 % band of all ranks together. */
+  readonly zStrain: number;
   /** Effective events (nm/(n + m)) below which a window is too thin to tell. */
   readonly minEvents: number;
   /** One window this far out is enough by itself … */
@@ -49,6 +51,7 @@ export const DEFAULT_DECISION_RULE: DecisionRule = Object.freeze({
   missingFactor: 0.5,
   zPage: 6.5,
   zWindow: 2,
+  zStrain: 3.018,
   minEvents: 50,
   zAtOnce: 10,
   bodyAtOnce: 0.15,

@@ -42,7 +42,7 @@ function directionOf(share: WatchedShare): DriftPlace["direction"] {
 /**
  * What a watched share shows, in words with its figures.
  *
- * @example "upper tail heavier: 3.4 % of values lie above the baseline's p99 (5.21), 3.4 times the baseline's 1.0 %; n = 12,000"
+ * For example: upper tail heavier: 3.4 % of values lie above the baseline's p99 (5.21), 3.4 times the baseline's 1.0 %; n = 12,000
  */
 export function sentenceOf(share: WatchedShare): string {
   const { now, before } = tailShares(share);

@@ -14,7 +14,7 @@ export interface Threshold {
  * Shape   ascending in rank and, not strictly, in value: with a heavy atom several ranks share one value.
  * Edges   thresholds of an empty baseline do not exist: an empty list.
  *
- * @example freezeThresholds(cdfOf([7])).map((t) => t.value) // => 7, eleven times
+ * @example freezeThresholds(cdfOf([7])).length // => 11
  */
 export function freezeThresholds(baseline: CdfView): readonly Threshold[] {
   if (baseline.n === 0) return [];

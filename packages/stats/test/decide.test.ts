@@ -1,9 +1,12 @@
 import { describe, expect, test } from "vitest";
+import { compareNumeric } from "../src/compare-numeric.js";
 import { type Decision, decide } from "../src/decide.js";
 import type { DecisionMemory } from "../src/decision-memory.js";
 import { DEFAULT_DECISION_RULE, type DecisionRule } from "../src/decision-rule.js";
 import type { NumericComparison } from "../src/numeric-comparison.js";
-import { WINDOWS } from "./kit/windows.js";
+import { numericSideOf } from "../src/numeric-side.js";
+import { Random } from "./kit/random.js";
+import { evenSample, WINDOWS, windowOf } from "./kit/windows.js";
 
 const MINUTE_MS = 60_000;
 
@@ -44,6 +47,25 @@ describe("decide(memory, comparison, rule, windowEndMs)", () => {
         "n = 1,000; beyond tolerance for 4 windows in a row",
     );
     expect(last.place!.ratio).toBeCloseTo(2.5, 1);
+  });
+
+  test("decide shows straining only from the 95 % band on, while the streak counts from |z| of 2", () => {
+    // 1.9 % beyond p99: z of about −2.4 a window, −3.3 in two.
+    const window = () => windowOf(evenSample(1000, (v, rank) => (rank > 0.9815 && rank < 0.9985 ? 4.9 : v)));
+    const decisions = run(repeat(window, 3));
+    expect(decisions.map((d) => d.state)).toEqual(["holding", "straining", "straining"]);
+    expect(decisions[0]).toMatchObject({ place: null, memory: { streaks: [{ key: "p0.99", windows: 1 }] } });
+    expect(decisions[2]!.memory.streaks[0]!.windows).toBe(3);
+  });
+
+  test("decide never calls 500 windows of the baseline's own distribution adrift, and at most 4 % of them straining", () => {
+    const random = new Random(85);
+    const baseline = numericSideOf(random.sample(20_000));
+    const seen = states(
+      Array.from({ length: 500 }, () => compareNumeric(baseline, numericSideOf(random.sample(500)))),
+    );
+    expect(seen).not.toContain("adrift");
+    expect(seen.filter((s) => s === "straining").length).toBeLessThanOrEqual(20);
   });
 
   test("decide never goes adrift before `persistence` windows, however far the pooled z, unless one is far enough at once", () => {
