@@ -12,13 +12,20 @@ const POLL_MS = 200;
 /** A file has no coordinator: after losing it to another collector, wait long enough for that one to get on. */
 const REOPEN_AFTER_MS = 2_000;
 
-/** Each file is one partition of its own topic, the path as the config has it. */
+/** Each file is one partition of its own topic: its path as the config has it. */
 const PARTITION = 0;
 
 const CONTROL: BatchControl = {
   heartbeat: () => yieldToOthers(),
   lowOffset: async () => 0,
 };
+
+interface OpenFile {
+  readonly path: string;
+  readonly topic: string;
+  readonly reader: LineReader;
+  readonly sink: SourceSink;
+}
 
 /** NDJSON files, read from the stored byte position on: growing ones for ever, finished ones to their end. */
 export class FileSource implements Source {
@@ -42,8 +49,9 @@ export class FileSource implements Source {
 
   async start(sink: SourceSink): Promise<void> {
     let unfinished = this.#config.paths.length;
-    for (const path of this.#config.paths) {
-      const reading = this.#readFile(path, sink).then(
+    for (const [index, path] of this.#config.paths.entries()) {
+      const topic = this.#config.names?.[index] ?? path;
+      const reading = this.#readFile(path, topic, sink).then(
         (outcome) => {
           if (outcome === "finished" && --unfinished === 0) this.#settle.resolve();
         },
@@ -62,12 +70,12 @@ export class FileSource implements Source {
 
   committed(): void {}
 
-  async #readFile(path: string, sink: SourceSink): Promise<"finished" | "halted" | "stopped"> {
+  async #readFile(path: string, topic: string, sink: SourceSink): Promise<"finished" | "halted" | "stopped"> {
     for (let attempt = 1; !this.#stopping; attempt++) {
       let reader: LineReader | null = null;
       try {
         reader = await LineReader.open(path);
-        const outcome = await this.#readOpened(path, reader, sink, () => {
+        const outcome = await this.#readOpened({ path, topic, reader, sink }, () => {
           attempt = 1;
           this.#reports.back("source");
         });
@@ -87,13 +95,11 @@ export class FileSource implements Source {
   }
 
   async #readOpened(
-    path: string,
-    reader: LineReader,
-    sink: SourceSink,
+    { path, topic, reader, sink }: OpenFile,
     onOpen: () => void,
   ): Promise<"finished" | "halted" | "stopped" | "reopen"> {
     const verdict = await sink.open({
-      topic: path,
+      topic,
       partition: PARTITION,
       startOffset: 0,
       lowOffset: 0,
@@ -110,15 +116,15 @@ export class FileSource implements Source {
       const atEnd = lines.toOffset === position && lines.fileBytes >= position;
       if (atEnd) {
         if (!this.#config.follow) {
-          await sink.finish(path, PARTITION);
+          await sink.finish(topic, PARTITION);
           return this.#stopping ? "stopped" : "finished";
         }
-        sink.reportEnd(path, PARTITION, lines.fileBytes);
+        sink.reportEnd(topic, PARTITION, lines.fileBytes);
         await this.#pause(POLL_MS);
         if (await wasReplaced(path, reader)) return "reopen";
         continue;
       }
-      const batch = { topic: path, partition: PARTITION, fromOffset: position, ...lines };
+      const batch = { topic, partition: PARTITION, fromOffset: position, ...lines };
       const next = await sink.take({ ...batch, endOffset: lines.fileBytes }, CONTROL);
       if (next.action === "read-on") position = lines.toOffset;
       else if (next.action === "seek") position = next.offset;
