@@ -23,7 +23,7 @@ export type StoreAddress =
  * @throws MOORLINE_STATE_STORE_NEWER when a newer Moorline wrote it
  */
 export async function openStore(address: StoreAddress): Promise<Store> {
-  const engine = openEngine(address);
+  const engine = await openEngine(address);
   const store = storeOf(engine);
   try {
     await store.migrate();
@@ -34,9 +34,9 @@ export async function openStore(address: StoreAddress): Promise<Store> {
   return store;
 }
 
-function openEngine(address: StoreAddress): Engine {
+async function openEngine(address: StoreAddress): Promise<Engine> {
   try {
-    return address.kind === "sqlite" ? sqliteEngine(address.path) : postgresEngine(address.url);
+    return address.kind === "sqlite" ? await sqliteEngine(address.path) : postgresEngine(address.url);
   } catch (error) {
     throw storeError(error);
   }

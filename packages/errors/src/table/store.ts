@@ -25,6 +25,11 @@ export const STORE_ERRORS = errorRows({
     template: "the store refused: {reason}",
     hint: "check the rights of the store's user or file, and that no other program changed its tables",
   },
+  MOORLINE_FORMAT_STORE_FILE: {
+    category: "FORMAT",
+    template: "the store file cannot be read: {reason}",
+    hint: "it is no SQLite file or it is damaged: check the path in the config, or restore the file from a copy",
+  },
   MOORLINE_STATE_STORE_NEWER: {
     category: "STATE",
     template: "the store has schema version {found}, this Moorline knows up to {known}",
