@@ -1,9 +1,9 @@
 import { BUCKETS, DIGIT_BITS, DIGIT_MASK, keyOf, toOffsets } from "./sort-key";
 
-const FULL_PASSES = 6;
+const FULL_PASSES = 7;
 /** Passes over the top digits of key − least key, before the fix-up. */
 const TOP_PASSES = 3;
-const histograms: usize = memory.data(6 * 2048 * 4);
+const histograms: usize = memory.data(7 * 1024 * 4);
 
 /** With fewer ascending runs than this they are merged, two by two; with more the keys are sorted by radix. */
 const MOST_RUNS = 16;

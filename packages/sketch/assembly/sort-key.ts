@@ -1,7 +1,7 @@
 /** Bits of a digit of the radix sorts. */
-export const DIGIT_BITS: u64 = 11;
-export const BUCKETS: i32 = 2048;
-export const DIGIT_MASK: u64 = 2047;
+export const DIGIT_BITS: u64 = 10;
+export const BUCKETS: i32 = 1024;
+export const DIGIT_MASK: u64 = 1023;
 
 const SIGN: u64 = 0x8000000000000000;
 

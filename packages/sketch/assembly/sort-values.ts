@@ -8,8 +8,8 @@ import {
   toOffsets,
 } from "./sort-key";
 
-const FULL_PASSES: usize = 6;
-const histograms: usize = memory.data(6 * 2048 * 4);
+const FULL_PASSES: usize = 7;
+const histograms: usize = memory.data(7 * 1024 * 4);
 
 /** Below this many values insertion is cheaper than two histograms. */
 const INSERTION_LIMIT = 40;
@@ -20,9 +20,9 @@ const MOVES_PER_VALUE = 2;
 /**
  * Sorts values ascending, −0 as 0; gives 0, and leaves them in any order, when one is not finite.
  *
- * Ascending input is found in the first sweep. Else a radix sort in two passes over the top 22 bits of key − least key, so
+ * Ascending input is found in the first sweep. Else a radix sort in two passes over the top 20 bits of key − least key, so
  * that the bits are spent on the range that is there, then insertion for what those bits do not tell apart. Where that would
- * take too many moves (clusters far apart) all six digits are sorted; digits that all values share are skipped.
+ * take too many moves (clusters far apart) all seven digits are sorted; digits that all values share are skipped.
  */
 export function sortValues(values: usize, scratch: usize, count: i32): i32 {
   const end = values + ((<usize>count) << 3);
@@ -103,7 +103,7 @@ function insertionSort(values: usize, end: usize, most: i32): bool {
 }
 
 function sortAllDigits(values: usize, scratch: usize, count: i32): void {
-  memory.fill(histograms, 0, 6 * BUCKETS * 4);
+  memory.fill(histograms, 0, 7 * BUCKETS * 4);
   const bytes = (<usize>count) << 3;
   for (let at: usize = 0; at < bytes; at += 8) {
     let key = keyOf(load<u64>(values + at));

@@ -4,4 +4,4 @@ export const LEAST_COMPRESSION = 100;
 export const MOST_COMPRESSION = 2000;
 
 /** A sealed (encoded) sketch has this share of its working compression; measured: docs/decisions/two-levels.md. */
-export const SEAL_RATIO = 0.5;
+export const SEAL_RATIO = 0.55;

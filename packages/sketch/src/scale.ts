@@ -1,7 +1,7 @@
 import type { PassPlan, PassScale } from "./kernel/kernel.js";
 
 /** Share of k1 (fine in the middle, for KS) in the mix; the rest is k2 (fine in the tails). */
-export const MIDDLE_SHARE = 0.6;
+export const MIDDLE_SHARE = 0.55;
 
 /**
  * The scale function: a mix of k1 and k2 of Dunning & Ertl (2019, arXiv:1902.04023), by its derivative
