@@ -28,8 +28,9 @@ function rawZstdFrame(content: Buffer): Buffer {
 describe("codecs", () => {
   it("registerCodecs() leaves no codec of Kafka unregistered", () => {
     registerCodecs();
+    const codecs = CompressionCodecs as unknown as Record<number, () => { decompress: unknown }>;
     for (const type of [CompressionTypes.Snappy, CompressionTypes.LZ4, CompressionTypes.ZSTD]) {
-      expect(typeof CompressionCodecs[type]?.().decompress).toBe("function");
+      expect(typeof codecs[type]?.().decompress).toBe("function");
     }
   });
 
