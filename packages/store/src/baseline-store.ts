@@ -1,6 +1,6 @@
 import { MoorlineError } from "@moorline/errors";
 import type { Engine } from "./engine/engine.js";
-import { inChunks } from "./in-chunks.js";
+import { bodyBytes, inChunks } from "./in-chunks.js";
 import { insertLogbook } from "./logbook-store.js";
 import type { BaselineTable } from "./schema.js";
 import type { BaselineRecord, BaselineStore } from "./store.js";
@@ -31,7 +31,7 @@ export function baselineStore({ db }: Engine): BaselineStore {
           block: part.block,
           body: part.body,
         }));
-        for (const chunk of inChunks(rows, 5))
+        for (const chunk of inChunks(rows, 5, bodyBytes))
           await transaction.insertInto("baseline_part").values(chunk).execute();
         await insertLogbook(transaction, {
           atMs: baseline.createdAtMs,
@@ -73,12 +73,6 @@ export function baselineStore({ db }: Engine): BaselineStore {
 
     activate: (stream, id, by, atMs) =>
       db.transaction().execute(async (transaction) => {
-        // A write before the reads, even where it changes no row: SQLite then holds its write lock from the start.
-        await transaction
-          .updateTable("active_baseline")
-          .set((eb) => ({ since_ms: eb.ref("since_ms") }))
-          .where("stream", "=", stream)
-          .execute();
         const known = await transaction
           .selectFrom("baseline")
           .select("id")

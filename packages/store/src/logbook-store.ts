@@ -31,14 +31,21 @@ export function logbookStore({ db }: Engine): LogbookStore {
   };
 }
 
-/** Writes an entry and returns its id; with `once`, the same content written again changes nothing and returns null. */
+/** Writes an entry and returns its id; with `once`, the same entry (all it says, and when) again changes nothing and returns null. */
 export async function insertLogbook(
   db: Kysely<Tables>,
   entry: LogbookWrite,
   options: { readonly once?: boolean } = {},
 ): Promise<number | null> {
   const detail = JSON.stringify(entry.detail ?? null);
-  const content = JSON.stringify([entry.stream, entry.kind, entry.subject, entry.sentence, detail]);
+  const content = JSON.stringify([
+    entry.atMs,
+    entry.stream,
+    entry.kind,
+    entry.subject,
+    entry.sentence,
+    detail,
+  ]);
   const row = await db
     .insertInto("logbook")
     .values({

@@ -8,6 +8,7 @@ export interface Tables {
   segment: SegmentTable;
   segment_pending: SegmentPendingTable;
   rollup: RollupTable;
+  stream_slice: StreamSliceTable;
   evaluation: EvaluationTable;
   feature_state: FeatureStateTable;
   stream_progress: StreamProgressTable;
@@ -49,13 +50,18 @@ export interface SegmentSetTable {
   /** Reasons and counts, JSON. */
   dead_letters: string;
   dead_letter_events: number;
-  /** How many segments were written with the set: a missing one is found. */
+  /** How many segments were written with the set, and the sum of their checksums: a missing or altered one is found. */
   segment_count: number;
+  segment_checksum: number;
+  /** How many gaps lie in the range, and how many offsets they hold. */
+  gap_count: number;
+  gap_offsets: number;
   written_at_ms: number;
 }
 
 export interface OffsetGapTable {
   id: Generated<number>;
+  set_id: number;
   stream: string;
   topic: string;
   partition: number;
@@ -72,6 +78,8 @@ export interface SegmentTable {
   pane_start_ms: number;
   slice: string;
   events: number;
+  /** CRC-32 of the body. */
+  body_crc: number;
   body: Uint8Array;
 }
 
@@ -90,6 +98,12 @@ export interface RollupTable {
   events: number;
   amended: number;
   body: Uint8Array;
+}
+
+/** The slices that have rollups: finding them in the rollups themselves would read them all. */
+export interface StreamSliceTable {
+  stream: string;
+  slice: string;
 }
 
 export interface EvaluationTable {

@@ -1,5 +1,5 @@
 import type { Kysely } from "kysely";
-import { partitionName } from "../ingest-store.js";
+import { partitionName } from "../partition-key.js";
 import type { PartitionTable, SegmentSetTable, Tables } from "../schema.js";
 import type { Findings } from "./findings.js";
 

@@ -14,14 +14,16 @@ export const initialTables: Migration = async (transaction, types) => {
     sql`CREATE TABLE segment_set (
       id ${id}, stream text NOT NULL, topic text NOT NULL, "partition" bigint NOT NULL, epoch bigint NOT NULL,
       from_offset bigint NOT NULL, to_offset bigint NOT NULL, events bigint NOT NULL, late_events bigint NOT NULL,
-      dead_letters text NOT NULL, dead_letter_events bigint NOT NULL, segment_count bigint NOT NULL, written_at_ms bigint NOT NULL,
+      dead_letters text NOT NULL, dead_letter_events bigint NOT NULL, segment_count bigint NOT NULL, segment_checksum bigint NOT NULL,
+      gap_count bigint NOT NULL, gap_offsets bigint NOT NULL, written_at_ms bigint NOT NULL,
       UNIQUE (stream, topic, "partition", from_offset))`,
     sql`CREATE TABLE offset_gap (
-      id ${id}, stream text NOT NULL, topic text NOT NULL, "partition" bigint NOT NULL,
-      from_offset bigint NOT NULL, to_offset bigint NOT NULL, reason text NOT NULL, at_ms bigint NOT NULL)`,
+      id ${id}, set_id bigint NOT NULL REFERENCES segment_set (id), stream text NOT NULL, topic text NOT NULL,
+      "partition" bigint NOT NULL, from_offset bigint NOT NULL, to_offset bigint NOT NULL, reason text NOT NULL, at_ms bigint NOT NULL)`,
     sql`CREATE TABLE segment (
       id ${id}, set_id bigint NOT NULL REFERENCES segment_set (id), stream text NOT NULL, pane_start_ms bigint NOT NULL,
-      slice text NOT NULL, events bigint NOT NULL, body ${blob} NOT NULL)`,
+      slice text NOT NULL, events bigint NOT NULL, body_crc bigint NOT NULL, body ${blob} NOT NULL)`,
+    sql`CREATE INDEX offset_gap_by_set ON offset_gap (set_id)`,
     sql`CREATE INDEX segment_by_pane ON segment (stream, pane_start_ms)`,
     sql`CREATE INDEX segment_by_set ON segment (set_id)`,
     sql`CREATE TABLE segment_pending (
@@ -31,6 +33,7 @@ export const initialTables: Migration = async (transaction, types) => {
       stream text NOT NULL, level text NOT NULL, start_ms bigint NOT NULL, slice text NOT NULL, feature text NOT NULL,
       events bigint NOT NULL, amended bigint NOT NULL, body ${blob} NOT NULL,
       PRIMARY KEY (stream, level, slice, feature, start_ms))`,
+    sql`CREATE TABLE stream_slice (stream text NOT NULL, slice text NOT NULL, PRIMARY KEY (stream, slice))`,
     sql`CREATE INDEX rollup_by_time ON rollup (stream, level, start_ms)`,
     sql`CREATE TABLE evaluation (
       stream text NOT NULL, horizon text NOT NULL, window_start_ms bigint NOT NULL, window_end_ms bigint NOT NULL,
