@@ -8,7 +8,7 @@ import { fileURLToPath } from "node:url";
 import { NumericSketch } from "@moorline/sketch";
 import { openStore } from "@moorline/store";
 import { Kafka, logLevel } from "kafkajs";
-import { startKafka } from "../real-parts/index.js";
+import { confluentPython, startKafka } from "../real-parts/index.js";
 import { expectedPanes, type ProducedEvents } from "./expected-counts.js";
 import { MoorlineProcess, moorlineCommand } from "./moorline-process.js";
 
@@ -52,7 +52,7 @@ const PANES = 40;
 export async function chaosRun(options: ChaosOptions): Promise<ChaosResult> {
   const started = Date.now();
   const folder = await mkdtemp(join(tmpdir(), "moorline-chaos-"));
-  const kafka = await startKafka();
+  const kafka = await startKafka({ own: true });
   const configPath = join(folder, "moorline.yaml");
   const storePath = join(folder, "moorline.db");
   const produced: ProducedEvents = {
@@ -66,7 +66,12 @@ export async function chaosRun(options: ChaosOptions): Promise<ChaosResult> {
     await writeFile(configPath, configText(kafka.bootstrap, storePath));
     await createTopic(kafka.bootstrap);
     const evaluator = new MoorlineProcess(["run", "--config", configPath, "--only", "evaluator"], folder);
-    const producer = startProducer(kafka.bootstrap, produced, options.eventsPerSecond);
+    const producer = startProducer(
+      await confluentPython(),
+      kafka.bootstrap,
+      produced,
+      options.eventsPerSecond,
+    );
     const chaos = await disturb(options, { configPath, storePath, folder }, kafka, producer.done);
     const delivery = await producer.done;
     options.log(`produced: ${delivery}`);
@@ -140,6 +145,7 @@ async function topicLength(bootstrap: string): Promise<number> {
 }
 
 function startProducer(
+  python: string,
   bootstrap: string,
   produced: ProducedEvents,
   rate: number,
@@ -148,7 +154,7 @@ function startProducer(
   const args = [bootstrap, TOPIC, PARTITIONS, produced.events, rate, produced.baseMs, produced.stepMs].map(
     String,
   );
-  const child = spawn("/usr/bin/python3", [script, ...args], { stdio: ["ignore", "pipe", "pipe"] });
+  const child = spawn(python, [script, ...args], { stdio: ["ignore", "pipe", "pipe"] });
   let stdout = "";
   let stderr = "";
   child.stdout.on("data", (chunk: Buffer) => {

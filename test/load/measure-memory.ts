@@ -9,7 +9,7 @@ import { setTimeout as sleep } from "node:timers/promises";
 import { fileURLToPath } from "node:url";
 import { openStore } from "@moorline/store";
 import { Kafka, logLevel } from "kafkajs";
-import { startKafka } from "../real-parts/index.js";
+import { confluentPython, startKafka } from "../real-parts/index.js";
 
 const FEATURES = Number(process.env["MOORLINE_MEMORY_FEATURES"] ?? 1_000);
 const SLICES = 4;
@@ -96,7 +96,7 @@ ${features}
 async function startProducer(bootstrap: string): Promise<string> {
   const script = fileURLToPath(new URL("./wide-producer.py", import.meta.url));
   const args = [bootstrap, TOPIC, FEATURES, SLICES, RATE, SECONDS].map(String);
-  const child = spawn("/usr/bin/python3", [script, ...args], { stdio: ["ignore", "pipe", "inherit"] });
+  const child = spawn(await confluentPython(), [script, ...args], { stdio: ["ignore", "pipe", "inherit"] });
   let stdout = "";
   child.stdout.on("data", (chunk: Buffer) => {
     stdout += chunk.toString();

@@ -1,0 +1,66 @@
+import { randomBytes } from "node:crypto";
+import { GenericContainer, getContainerRuntimeClient } from "testcontainers";
+import { freePort } from "../free-port.js";
+import { NotToBeHad } from "../not-to-be-had.js";
+import { took } from "../took.js";
+import { brokerAnswers } from "./broker-answers.js";
+import { brokerProperties } from "./broker-properties.js";
+import { KAFKA_VERSION } from "./kafka-jars.js";
+
+const IMAGE = `apache/kafka:${KAFKA_VERSION}`;
+const DATA = "/tmp/kafka-data";
+const CONFIG = "/tmp/server.properties";
+const JAVA = "java -Xms128m -Xmx384m -XX:+UseSerialGC -XX:TieredStopAtLevel=1 -cp '/opt/kafka/libs/*'";
+const START_WITHIN_MS = 90_000;
+
+export interface KafkaContainer {
+  readonly bootstrap: string;
+  readonly via: string;
+  stop(): Promise<void>;
+}
+
+/**
+ * A broker in a container, through testcontainers. The image is the official one, or one of the same name built on this machine; all that is asked of
+ * it is `java` and the broker's jars in /opt/kafka/libs. It uses the host's network, so that one address serves inside and outside.
+ */
+export async function startKafkaContainer(): Promise<KafkaContainer> {
+  process.env["TESTCONTAINERS_RYUK_DISABLED"] = "true";
+  await getContainerRuntimeClient().catch((error: unknown) => {
+    throw new NotToBeHad("a Docker engine", `start one, or set DOCKER_HOST (${(error as Error).message})`);
+  });
+  const [port, controllerPort] = [await freePort(), await freePort()];
+  const bootstrap = `127.0.0.1:${port}`;
+  const properties = brokerProperties({
+    advertised: bootstrap,
+    listen: bootstrap,
+    controller: `127.0.0.1:${controllerPort}`,
+    dataDir: DATA,
+  });
+  const clusterId = randomBytes(16).toString("base64url");
+  const command =
+    `${JAVA} kafka.tools.StorageTool format --standalone -t ${clusterId} -c ${CONFIG} && ` +
+    `exec ${JAVA} kafka.Kafka ${CONFIG}`;
+  const container = await new GenericContainer(IMAGE)
+    .withNetworkMode("host")
+    .withEntrypoint(["sh", "-c"])
+    .withCommand([command])
+    .withCopyContentToContainer([{ content: properties, target: CONFIG }])
+    .withStartupTimeout(START_WITHIN_MS)
+    .start();
+  const deadline = Date.now() + START_WITHIN_MS;
+  while (!(await brokerAnswers(bootstrap))) {
+    if (Date.now() > deadline) {
+      await container.stop();
+      throw new Error(`the broker in ${IMAGE} does not answer at ${bootstrap}`);
+    }
+  }
+  const via = `${IMAGE} in a container`;
+  took("Kafka", via);
+  return {
+    bootstrap,
+    via,
+    stop: async () => {
+      await container.stop();
+    },
+  };
+}
