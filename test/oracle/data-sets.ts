@@ -1,11 +1,11 @@
-/** Two groups of a data set that R carries, as R code; `tied` says whether the pooled values repeat. */
+/** Two groups of a data set that R carries,. */
 export interface DataSetPair {
   readonly name: string;
   readonly first: string;
   readonly second: string;
 }
 
-/** From R's `datasets` package; 22 comparisons on 20 data sets, 10 to 530 values a side, with and without ties. */
+/** From R's `datasets` package; 22 comparisons on 16 data sets, 10 to 530 values a side, with and without ties. */
 export const DATA_SET_PAIRS: readonly DataSetPair[] = [
   {
     name: "sleep$extra, group 1 and 2",

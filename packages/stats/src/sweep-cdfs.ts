@@ -42,15 +42,11 @@ export function sweepCdfs(baseline: CdfView, production: CdfView): CdfSweep {
     const betweenB = onB ? 0 : eventsBetween(production, j, x);
     const left = ((onB ? bb[j]! : betweenB) * an - (onA ? ab[i]! : betweenA) * bn) / pairs;
     const right = ((onB ? bu[j]! : betweenB) * an - (onA ? au[i]! : betweenA) * bn) / pairs;
-    if (Math.abs(left) > distance) {
-      distance = Math.abs(left);
+    const further = Math.abs(right) > Math.abs(left) ? right : left;
+    if (Math.abs(further) > distance) {
+      distance = Math.abs(further);
       at = x;
-      sign = Math.sign(left);
-    }
-    if (Math.abs(right) > distance) {
-      distance = Math.abs(right);
-      at = x;
-      sign = Math.sign(right);
+      sign = Math.sign(further);
     }
     area += pieceArea(previousX, x, previous, left);
     previousX = x;
