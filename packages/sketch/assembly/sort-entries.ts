@@ -1,9 +1,14 @@
-import { BUCKETS, DIGIT_BITS, DIGIT_MASK, keyOf, toOffsets } from "./sort-key";
+import { keyOf, toOffsets } from "./sort-key";
 
-const FULL_PASSES = 7;
+/** Bits of a digit; a merge sorts tens of thousands of entries, so that 2,048 counters are few. */
+const DIGIT_BITS: u64 = 11;
+const BUCKETS: i32 = 2048;
+const DIGIT_MASK: u64 = 2047;
+
+const FULL_PASSES = 6;
 /** Passes over the top digits of key − least key, before the fix-up. */
-const TOP_PASSES = 3;
-const histograms: usize = memory.data(7 * 1024 * 4);
+const TOP_PASSES = 2;
+const histograms: usize = memory.data(6 * 2048 * 4);
 
 /** With fewer ascending runs than this they are merged, two by two; with more the keys are sorted by radix. */
 const MOST_RUNS = 16;
@@ -146,7 +151,7 @@ function sortDigits(
   for (let pass = 0; pass < passes; pass++) {
     const histogram = histograms + ((<usize>(pass * BUCKETS)) << 2);
     const digitShift = shift + <u64>pass * DIGIT_BITS;
-    toOffsets(histogram);
+    toOffsets(histogram, BUCKETS);
     for (let at: usize = 0; at < bytes; at += 8) {
       const bits = load<u64>(fromMeans + at);
       const slot = histogram + ((<usize>(((keyOf(bits) - least) >> digitShift) & DIGIT_MASK)) << 2);

@@ -1,8 +1,3 @@
-/** Bits of a digit of the radix sorts. */
-export const DIGIT_BITS: u64 = 10;
-export const BUCKETS: i32 = 1024;
-export const DIGIT_MASK: u64 = 1023;
-
 const SIGN: u64 = 0x8000000000000000;
 
 /** Unsigned order of keys = numeric order of values. */
@@ -15,9 +10,9 @@ export const LEAST_FINITE_KEY: u64 = 0x0010000000000000;
 export const GREATEST_FINITE_KEY: u64 = ~LEAST_FINITE_KEY;
 
 /** Turns the counts of one histogram into byte offsets of elements of 8 bytes. */
-export function toOffsets(histogram: usize): void {
+export function toOffsets(histogram: usize, buckets: usize): void {
   let sum: u32 = 0;
-  for (let i: usize = 0; i < <usize>BUCKETS; i++) {
+  for (let i: usize = 0; i < buckets; i++) {
     const at = histogram + (i << 2);
     const count = load<u32>(at);
     store<u32>(at, sum << 3);

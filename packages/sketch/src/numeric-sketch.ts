@@ -22,7 +22,7 @@ export const FLUSH_SIZE = 2048;
 const FIRST_BUFFER = 16;
 
 export interface SketchOptions {
-  /** Working compression δ, default 200 (about 270 clusters; 140 when encoded). */
+  /** Working compression δ, default 200 (about 270 clusters; 130 when encoded). */
   readonly compression?: number;
   /** Values at which events are counted exactly. */
   readonly thresholds?: ThresholdSet;
