@@ -1,4 +1,5 @@
 import { MoorlineError } from "@moorline/errors";
+import { checkNames } from "./check-names.js";
 import type { Engine } from "./engine/engine.js";
 import { bodyBytes, inChunks } from "./in-chunks.js";
 import { insertLogbook } from "./logbook-store.js";
@@ -8,8 +9,10 @@ import type { BaselineRecord, BaselineStore } from "./store.js";
 /** Baselines: written once, never changed. */
 export function baselineStore({ db }: Engine): BaselineStore {
   return {
-    put: (baseline, parts) =>
-      db.transaction().execute(async (transaction) => {
+    put: async (baseline, parts) => {
+      checkNames([baseline.stream, baseline.id]);
+      for (const part of parts) checkNames([baseline.id, part.slice, part.feature]);
+      return db.transaction().execute(async (transaction) => {
         const written = await transaction
           .insertInto("baseline")
           .values({
@@ -42,7 +45,8 @@ export function baselineStore({ db }: Engine): BaselineStore {
           detail: { by: baseline.createdBy, note: baseline.note },
         });
         return true;
-      }),
+      });
+    },
 
     list: async (stream) => {
       const rows = await db

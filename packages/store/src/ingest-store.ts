@@ -1,4 +1,5 @@
 import { checkCheckpoint } from "./check-checkpoint.js";
+import { checkNames } from "./check-names.js";
 import type { Engine } from "./engine/engine.js";
 import { insertLogbook } from "./logbook-store.js";
 import { keyColumns, ofPartition, partitionName } from "./partition-key.js";
@@ -10,6 +11,7 @@ import { writeCheckpoint } from "./write-checkpoint.js";
 export function ingestStore({ db }: Engine): IngestStore {
   return {
     claimPartition: async (claim) => {
+      checkNames([claim.stream, claim.topic]);
       const row = await db
         .insertInto("partition")
         .values({

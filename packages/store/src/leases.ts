@@ -1,4 +1,5 @@
 import type { Kysely, Transaction } from "kysely";
+import { checkNames } from "./check-names.js";
 import type { Tables } from "./schema.js";
 import type { EvaluationStore, Lease } from "./store.js";
 
@@ -9,6 +10,7 @@ import type { EvaluationStore, Lease } from "./store.js";
 export function leases(db: Kysely<Tables>): Pick<EvaluationStore, "acquireLease" | "releaseLease"> {
   return {
     acquireLease: async (name, owner, nowMs, ttlMs) => {
+      checkNames([name]);
       const row = await db
         .insertInto("lease")
         .values({ name, owner, token: 1, expires_at_ms: nowMs + ttlMs })

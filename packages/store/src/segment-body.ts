@@ -1,5 +1,6 @@
 import { crc32 } from "node:zlib";
 import { MoorlineError } from "@moorline/errors";
+import { fromStoredText, toStoredText } from "./stored-text.js";
 
 /** `MLSG`, then a version byte; see docs/segment-format.md, the only other place that knows the layout. */
 const MAGIC = [0x4d, 0x4c, 0x53, 0x47] as const;
@@ -19,7 +20,7 @@ export function encodeSegmentBody(
   const encoder = new TextEncoder();
   const entries = [...sketches].map(([feature, sketch]) => ({
     feature,
-    name: encoder.encode(feature),
+    name: encoder.encode(toStoredText(feature)),
     sketch,
   }));
   checkNames(entries);
@@ -84,7 +85,9 @@ export function decodeSegmentBody(bytes: Uint8Array): Map<string, Uint8Array> {
     const sketchLength = nameEnd + 4 <= end ? view.getUint32(nameEnd, true) : fail("a name is cut off", at);
     const sketchEnd = nameEnd + 4 + sketchLength;
     if (sketchEnd > end) fail("a sketch is cut off", nameEnd);
-    const name = decodeName(decoder, bytes.subarray(at + 2, nameEnd)) ?? fail("a name is not UTF-8", at + 2);
+    const name =
+      decodeName(decoder, bytes.subarray(at + 2, nameEnd)) ??
+      fail("a name is not written as names are", at + 2);
     if (features.has(name)) fail("a name stands twice", at + 2);
     features.set(name, bytes.subarray(nameEnd + 4, sketchEnd));
     at = sketchEnd;
@@ -95,7 +98,9 @@ export function decodeSegmentBody(bytes: Uint8Array): Map<string, Uint8Array> {
 
 function decodeName(decoder: InstanceType<typeof TextDecoder>, bytes: Uint8Array): string | null {
   try {
-    return decoder.decode(bytes);
+    const stored = decoder.decode(bytes);
+    const name = fromStoredText(stored);
+    return toStoredText(name) === stored ? name : null;
   } catch {
     return null;
   }

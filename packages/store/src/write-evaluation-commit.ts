@@ -1,4 +1,5 @@
 import type { Transaction } from "kysely";
+import { checkNames } from "./check-names.js";
 import { bodyBytes, inChunks } from "./in-chunks.js";
 import { holdLease } from "./leases.js";
 import { insertLogbook } from "./logbook-store.js";
@@ -13,6 +14,7 @@ export async function writeEvaluationCommit(
   transaction: Transaction<Tables>,
   batch: EvaluationCommit,
 ): Promise<"committed" | "fenced"> {
+  checkBatchNames(batch);
   if (!(await holdLease(transaction, batch.lease))) return "fenced";
   await writeProgress(transaction, batch.stream, batch.progress);
   await writeRollups(transaction, batch.stream, batch.rollups);
@@ -23,6 +25,13 @@ export async function writeEvaluationCommit(
   await writeStates(transaction, batch.states);
   for (const entry of batch.logbook) await insertLogbook(transaction, entry, { once: true });
   return "committed";
+}
+
+function checkBatchNames({ stream, rollups, evaluations, states }: EvaluationCommit): void {
+  for (const row of rollups) checkNames([stream, row.slice, row.feature]);
+  for (const row of evaluations)
+    checkNames([row.stream, row.horizon, row.slice, row.feature, row.baselineId]);
+  for (const row of states) checkNames([row.stream, row.horizon, row.slice, row.feature]);
 }
 
 async function writeProgress(

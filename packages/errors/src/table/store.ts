@@ -45,6 +45,12 @@ export const STORE_ERRORS = errorRows({
     template: "checkpoint of {partition} cannot be written: {reason}",
     hint: "this is a fault of the caller: offsets must ascend and counts must add up",
   },
+  MOORLINE_INPUT_STORE_NAME: {
+    category: "INPUT",
+    template:
+      "names of {bytes} bytes together are too long to be stored, {most} are the most; the longest begins with {start}",
+    hint: "shorten the stream, topic, slice or feature name",
+  },
   MOORLINE_INPUT_SEGMENT_BODY: {
     category: "INPUT",
     template: "a segment cannot be encoded: {reason}",

@@ -7,8 +7,8 @@ import {
   type QueryResult,
   type TransactionSettings,
 } from "kysely";
+import { fromStoredText, toStoredText } from "../stored-text.js";
 import { CommitUnanswered } from "./commit-unanswered.js";
-import { fromStoredText, toStoredText } from "./stored-text.js";
 
 export interface StoreDriverOptions {
   /** How a transaction begins, where the driver's own way will not do. */
