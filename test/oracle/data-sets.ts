@@ -1,4 +1,4 @@
-/** Two groups of a data set that R carries,. */
+/** Two groups of a data set that R carries, as R code. */
 export interface DataSetPair {
   readonly name: string;
   readonly first: string;
