@@ -31,8 +31,19 @@ export function paneStore({ db }: Engine): PaneStore {
       }));
     },
 
-    segments: async (stream, paneStartMs) => {
+    segmentSlices: async (stream, paneStartMs) => {
       const rows = await db
+        .selectFrom("segment")
+        .select("slice")
+        .distinct()
+        .where("stream", "=", stream)
+        .where("pane_start_ms", "=", paneStartMs)
+        .execute();
+      return allFirst(rows.map((row) => row.slice));
+    },
+
+    segments: async (stream, paneStartMs, slice) => {
+      let select = db
         .selectFrom("segment")
         .innerJoin("segment_set", "segment_set.id", "segment.set_id")
         .select(["segment.id", "segment.slice", "segment.events", "segment.body"])
@@ -43,7 +54,9 @@ export function paneStore({ db }: Engine): PaneStore {
           "segment_set.to_offset",
         ])
         .where("segment.stream", "=", stream)
-        .where("segment.pane_start_ms", "=", paneStartMs)
+        .where("segment.pane_start_ms", "=", paneStartMs);
+      if (slice !== undefined) select = select.where("segment.slice", "=", slice);
+      const rows = await select
         .orderBy("segment_set.topic")
         .orderBy("segment_set.partition")
         .orderBy("segment_set.from_offset")
@@ -83,9 +96,7 @@ export function paneStore({ db }: Engine): PaneStore {
         .distinct()
         .where("stream", "=", stream)
         .execute();
-      return rows
-        .map((row) => row.slice)
-        .toSorted((a, b) => Number(b === "all") - Number(a === "all") || (a < b ? -1 : 1));
+      return allFirst(rows.map((row) => row.slice));
     },
 
     extent: async (stream) => {
@@ -98,6 +109,11 @@ export function paneStore({ db }: Engine): PaneStore {
       return row?.first == null ? null : { firstPaneMs: Number(row.first), lastPaneMs: Number(row.last) };
     },
   };
+}
+
+/** `all` first, then by name. */
+function allFirst(slices: readonly string[]): readonly string[] {
+  return slices.toSorted((a, b) => Number(b === "all") - Number(a === "all") || (a < b ? -1 : 1));
 }
 
 function rollupRow(row: RollupTable): RollupRow {

@@ -129,8 +129,10 @@ export interface PartitionRow extends PartitionKey {
 export interface PaneStore {
   /** Panes that have segments not yet in a rollup, oldest first. */
   pendingPanes(stream: string): Promise<readonly PendingPane[]>;
-  /** Every segment of a pane, in the one order that merges use: topic, partition, fromOffset, slice. */
-  segments(stream: string, paneStartMs: number): Promise<readonly StoredSegment[]>;
+  /** The slices that a pane has segments of, `all` first. */
+  segmentSlices(stream: string, paneStartMs: number): Promise<readonly string[]>;
+  /** Every segment of a pane (of one slice, where that is named), in the one order that merges use: topic, partition, fromOffset, slice. */
+  segments(stream: string, paneStartMs: number, slice?: string): Promise<readonly StoredSegment[]>;
   /** Rollups with fromMs <= startMs < toMs, ordered by startMs, slice, feature. */
   rollups(query: RollupQuery): Promise<readonly RollupRow[]>;
   /** Slices seen in rollups of the stream, `all` first, then by name. */

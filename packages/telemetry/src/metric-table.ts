@@ -47,6 +47,12 @@ export const METRIC_TABLE = metricRows({
     help: "1 for the state the feature is in (holding, straining, adrift, thin, silent), else 0.",
     labels: [...FEATURE_LABELS, "state"],
   },
+  featureStateSince: {
+    type: "gauge",
+    name: "moorline_feature_state_since_timestamp_seconds",
+    help: "Event time since which the feature is in its state, in seconds since 1970.",
+    labels: FEATURE_LABELS,
+  },
   windowValues: {
     type: "gauge",
     name: "moorline_window_values",

@@ -1,1 +1,1 @@
-export {};
+export { type EvaluatorOptions, startEvaluator } from "./start-evaluator.js";
