@@ -78,7 +78,7 @@ export interface SegmentTable {
   pane_start_ms: number;
   slice: string;
   events: number;
-  /** CRC-32 of the body. */
+  /** What `bodyChecksum` says of the body. */
   body_crc: number;
   body: Uint8Array;
 }

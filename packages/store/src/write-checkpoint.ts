@@ -1,5 +1,5 @@
-import { crc32 } from "node:zlib";
 import type { Transaction } from "kysely";
+import { bodyChecksum } from "./body-checksum.js";
 import { bodyBytes, inChunks } from "./in-chunks.js";
 import { insertLogbook } from "./logbook-store.js";
 import { keyColumns, ofPartition, partitionName } from "./partition-key.js";
@@ -68,7 +68,7 @@ async function writeSegmentSet(
     pane_start_ms: segment.paneStartMs,
     slice: segment.slice,
     events: segment.events,
-    body_crc: crc32(segment.body),
+    body_crc: bodyChecksum(segment.body),
     body: segment.body,
   }));
   const { id: setId } = await transaction

@@ -1,11 +1,13 @@
 import { isMoorlineError } from "@moorline/errors";
 import type { Kysely } from "kysely";
+import { bodyChecksum } from "../body-checksum.js";
 import type { Tables } from "../schema.js";
 import { decodeSegmentBody } from "../segment-body.js";
 import type { Findings } from "./findings.js";
 import { addCounts, countDifference, countsOf, type KindSums, kindProblem, noCounts } from "./kind-sums.js";
+import { snapshot } from "./snapshot.js";
 
-/** Sums by slice, then feature. Maps, for names are data. */
+/** Counts of what is in a pane's rollups, by slice, then feature. Maps, for names are data. */
 type PaneSums = Map<string, Map<string, KindSums>>;
 
 /** Invariant 2: in every segment and every pane rollup, a feature's counts by kind add up to the events that were seen. */
@@ -13,90 +15,114 @@ export async function auditPanes(db: Kysely<Tables>, stream: string, findings: F
   const panes = await db
     .selectFrom("segment")
     .select("pane_start_ms")
-    .distinct()
     .where("stream", "=", stream)
+    .union((eb) =>
+      eb
+        .selectFrom("rollup")
+        .select("start_ms as pane_start_ms")
+        .where("stream", "=", stream)
+        .where("level", "=", "pane"),
+    )
     .orderBy("pane_start_ms")
     .execute();
   for (const { pane_start_ms } of panes) {
-    const sums = await segmentSums(db, stream, pane_start_ms, findings);
-    await auditPaneRollups(db, stream, pane_start_ms, sums, findings);
+    await snapshot(db, async (reader) => {
+      const sums = await auditSegments(reader, stream, pane_start_ms, findings);
+      await auditRollups(reader, stream, pane_start_ms, sums, findings);
+    });
   }
 }
 
-async function segmentSums(
+/** Looks into every segment of a pane, one at a time; returns the sums of those that the rollups contain. */
+async function auditSegments(
   db: Kysely<Tables>,
   stream: string,
   paneStartMs: number,
   findings: Findings,
 ): Promise<PaneSums> {
   const sums: PaneSums = new Map();
-  const ids = await db
+  const segments = await db
     .selectFrom("segment")
-    .select("id")
-    .where("stream", "=", stream)
-    .where("pane_start_ms", "=", paneStartMs)
-    .orderBy("id")
+    .leftJoin("segment_pending", "segment_pending.segment_id", "segment.id")
+    .select(["segment.id", "segment_pending.segment_id as pending"])
+    .where("segment.stream", "=", stream)
+    .where("segment.pane_start_ms", "=", paneStartMs)
+    .orderBy("segment.id")
     .execute();
-  for (const { id } of ids) {
+  for (const { id, pending } of segments) {
     const segment = await db
       .selectFrom("segment")
-      .select(["slice", "events", "body"])
+      .select(["slice", "events", "body", "body_crc"])
       .where("id", "=", id)
       .executeTakeFirstOrThrow();
     const where = `${paneName(paneStartMs)}, ${segment.slice}, segment ${id}`;
-    const features = sums.get(segment.slice) ?? new Map<string, KindSums>();
-    sums.set(segment.slice, features);
     reading(findings, where, () => {
-      for (const [feature, sketch] of decodeSegmentBody(segment.body)) {
-        const counts = countsOf(sketch);
-        const problem = kindProblem(counts, segment.events);
-        if (problem !== null) findings.add(2, `${where}, ${feature}`, problem);
-        const sum = features.get(feature) ?? noCounts();
-        features.set(feature, sum);
-        addCounts(sum, counts);
-      }
+      const counts = segmentCounts(segment, where, findings);
+      if (pending === null) addSegment(sums, segment.slice, counts);
     });
   }
   return sums;
 }
 
-/** A pane with segments still waiting has a rollup that is behind them; it is looked at when they are settled. */
-async function auditPaneRollups(
+/** Counts by feature of one segment, each held against the segment's events. */
+function segmentCounts(
+  segment: { readonly events: number; readonly body: Uint8Array; readonly body_crc: number },
+  where: string,
+  findings: Findings,
+): Map<string, KindSums> {
+  if (bodyChecksum(segment.body) !== segment.body_crc) {
+    findings.add(2, where, "its bytes are not those that were written (the checksum does not match)");
+  }
+  const counts = new Map<string, KindSums>();
+  for (const [feature, sketch] of decodeSegmentBody(segment.body)) {
+    const inFeature = countsOf(sketch);
+    const problem = kindProblem(inFeature, segment.events);
+    if (problem !== null) findings.add(2, `${where}, ${feature}`, problem);
+    counts.set(feature, inFeature);
+  }
+  return counts;
+}
+
+function addSegment(sums: PaneSums, slice: string, counts: ReadonlyMap<string, KindSums>): void {
+  const features = sums.get(slice) ?? new Map<string, KindSums>();
+  sums.set(slice, features);
+  for (const [feature, inSegment] of counts) {
+    const sum = features.get(feature) ?? noCounts();
+    features.set(feature, sum);
+    addCounts(sum, inSegment);
+  }
+}
+
+/** Every rollup of the pane holds what its settled segments hold, and every settled feature has its rollup. */
+async function auditRollups(
   db: Kysely<Tables>,
   stream: string,
   paneStartMs: number,
   sums: PaneSums,
   findings: Findings,
 ): Promise<void> {
-  const waiting = await db
-    .selectFrom("segment_pending")
-    .select("segment_id")
+  const rollups = db
+    .selectFrom("rollup")
     .where("stream", "=", stream)
-    .where("pane_start_ms", "=", paneStartMs)
-    .limit(1)
-    .execute();
-  if (waiting.length > 0) return;
-  for (const [slice, features] of sums) {
-    const rows = await db
-      .selectFrom("rollup")
-      .select(["feature", "body"])
-      .where("stream", "=", stream)
-      .where("level", "=", "pane")
-      .where("start_ms", "=", paneStartMs)
-      .where("slice", "=", slice)
-      .execute();
-    const rolledUp = new Map(rows.map((row) => [row.feature, row.body]));
-    for (const [feature, expected] of features) {
-      const where = `${paneName(paneStartMs)}, ${slice}, ${feature}`;
-      const body = rolledUp.get(feature);
-      if (body === undefined) {
-        findings.add(2, where, "its segments are marked as rolled up, but there is no rollup");
-        continue;
-      }
+    .where("level", "=", "pane")
+    .where("start_ms", "=", paneStartMs);
+  for (const { slice } of await rollups.select("slice").distinct().execute()) {
+    const rows = await rollups.select(["feature", "events", "body"]).where("slice", "=", slice).execute();
+    for (const rollup of rows) {
+      const expected = sums.get(slice)?.get(rollup.feature) ?? noCounts();
+      sums.get(slice)?.delete(rollup.feature);
+      const where = `${paneName(paneStartMs)}, ${slice}, ${rollup.feature}`;
       reading(findings, where, () => {
-        const difference = countDifference(countsOf(body), expected);
-        if (difference !== null) findings.add(2, where, `the rollup is wrong: ${difference}`);
+        const counts = countsOf(rollup.body);
+        const problem = countDifference(counts, expected) ?? kindProblem(counts, rollup.events);
+        if (problem !== null) findings.add(2, where, `the rollup is wrong: ${problem}`);
       });
+    }
+  }
+  for (const [slice, features] of sums) {
+    for (const feature of features.keys()) {
+      const where = `${paneName(paneStartMs)}, ${slice}, ${feature}`;
+      findings.add(2, where, "its segments are marked as rolled up, but there is no rollup");
     }
   }
 }

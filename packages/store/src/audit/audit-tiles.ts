@@ -1,86 +1,81 @@
-import type { Kysely } from "kysely";
-import { partitionName } from "../partition-key.js";
+import type { Kysely, Selectable } from "kysely";
+import { ofPartition, partitionName } from "../partition-key.js";
 import type { PartitionTable, SegmentSetTable, Tables } from "../schema.js";
+import type { PartitionKey } from "../store.js";
+import { auditSet } from "./audit-set.js";
 import type { Findings } from "./findings.js";
+import { snapshot } from "./snapshot.js";
 
 const PAGE = 500;
 
-type SetRow = Pick<
-  SegmentSetTable,
-  "from_offset" | "to_offset" | "events" | "late_events" | "dead_letter_events" | "segment_count"
-> & {
-  readonly id: number;
-};
-
 /** Invariant 1: the checkpoints of each partition tile its offsets from its start to where it stands, and add up to its sums. */
 export async function auditTiles(db: Kysely<Tables>, stream: string, findings: Findings): Promise<void> {
-  const partitions = await db.selectFrom("partition").selectAll().where("stream", "=", stream).execute();
-  for (const partition of partitions) await auditPartition(db, partition, findings);
-  await auditStrays(db, stream, partitions, findings);
+  const partitions = await db
+    .selectFrom("partition")
+    .select(["stream", "topic", "partition"])
+    .where("stream", "=", stream)
+    .execute();
+  for (const key of partitions) await snapshot(db, (reader) => auditPartition(reader, key, findings));
+  await auditStrays(db, stream, findings);
 }
 
-async function auditPartition(
-  db: Kysely<Tables>,
-  partition: PartitionTable,
-  findings: Findings,
-): Promise<void> {
+async function auditPartition(db: Kysely<Tables>, key: PartitionKey, findings: Findings): Promise<void> {
+  const partition = await db
+    .selectFrom("partition")
+    .selectAll()
+    .where(ofPartition(key))
+    .executeTakeFirstOrThrow();
   const where = partitionName(partition);
   const sums = { events: 0, late: 0, dead: 0 };
   let at = partition.start_offset;
   for await (const set of setsOf(db, partition)) {
-    if (set.from_offset > at)
-      findings.add(1, where, `offsets ${at} to ${set.from_offset - 1} are covered by no checkpoint`);
-    if (set.from_offset < at)
-      findings.add(1, where, `offsets ${set.from_offset} to ${at - 1} are covered by two checkpoints`);
+    const problem = tileProblem(at, set);
+    if (problem !== null) findings.add(1, where, problem);
     at = Math.max(at, set.to_offset);
     sums.events += set.events;
     sums.late += set.late_events;
     sums.dead += set.dead_letter_events;
-    if (set.events + set.dead_letter_events > set.to_offset - set.from_offset) {
-      findings.add(
-        1,
-        where,
-        `checkpoint ${set.from_offset} to ${set.to_offset - 1} counts more events than it has offsets`,
-      );
-    }
     await auditSet(db, set, where, findings);
   }
-  if (at < partition.next_offset) {
-    findings.add(1, where, `offsets ${at} to ${partition.next_offset - 1} are covered by no checkpoint`);
-  }
-  if (at > partition.next_offset) {
-    findings.add(1, where, `the next offset is ${partition.next_offset}, but checkpoints reach to ${at - 1}`);
-  }
+  const problem = endProblem(at, partition.next_offset);
+  if (problem !== null) findings.add(1, where, problem);
   const kept = { events: partition.events, late: partition.late_events, dead: partition.dead_letters };
   for (const kind of ["events", "late", "dead"] as const) {
-    if (kept[kind] !== sums[kind]) {
-      findings.add(
-        1,
-        where,
-        `the partition says ${kept[kind]} (${kind}), its checkpoints add up to ${sums[kind]}`,
-      );
-    }
+    if (kept[kind] === sums[kind]) continue;
+    findings.add(
+      1,
+      where,
+      `the partition says ${kept[kind]} (${kind}), its checkpoints add up to ${sums[kind]}`,
+    );
   }
 }
 
+function tileProblem(at: number, set: Selectable<SegmentSetTable>): string | null {
+  if (set.to_offset <= set.from_offset) {
+    return `the checkpoint that starts at ${set.from_offset} ends at ${set.to_offset}, not after it`;
+  }
+  if (set.from_offset > at) return `offsets ${at} to ${set.from_offset - 1} are covered by no checkpoint`;
+  if (set.from_offset === at) return null;
+  const end = Math.min(at, set.to_offset) - 1;
+  return `offsets ${set.from_offset} to ${end} are covered by two checkpoints`;
+}
+
+function endProblem(at: number, nextOffset: number): string | null {
+  if (at < nextOffset) return `offsets ${at} to ${nextOffset - 1} are covered by no checkpoint`;
+  return at > nextOffset ? `the next offset is ${nextOffset}, but checkpoints reach to ${at - 1}` : null;
+}
+
 /** The checkpoints of a partition by offset, a page at a time. */
-async function* setsOf(db: Kysely<Tables>, partition: PartitionTable): AsyncGenerator<SetRow> {
+async function* setsOf(
+  db: Kysely<Tables>,
+  partition: PartitionTable,
+): AsyncGenerator<Selectable<SegmentSetTable>> {
   let after = -1;
   for (;;) {
     const page = await db
       .selectFrom("segment_set")
-      .select([
-        "id",
-        "from_offset",
-        "to_offset",
-        "events",
-        "late_events",
-        "dead_letter_events",
-        "segment_count",
-      ])
-      .where("stream", "=", partition.stream)
-      .where("topic", "=", partition.topic)
-      .where("partition", "=", partition.partition)
+      .selectAll()
+      .where(ofPartition(partition))
       .where("from_offset", ">", after)
       .orderBy("from_offset")
       .limit(PAGE)
@@ -91,55 +86,22 @@ async function* setsOf(db: Kysely<Tables>, partition: PartitionTable): AsyncGene
   }
 }
 
-/** A checkpoint's segments are all there, and each way of slicing holds its events once. */
-async function auditSet(db: Kysely<Tables>, set: SetRow, where: string, findings: Findings): Promise<void> {
-  const segments = await db
-    .selectFrom("segment")
-    .select(["slice", "events"])
-    .where("set_id", "=", set.id)
-    .execute();
-  const range = `checkpoint ${set.from_offset} to ${set.to_offset - 1}`;
-  if (segments.length !== set.segment_count) {
-    findings.add(
-      1,
-      where,
-      `${range} was written with ${set.segment_count} segments, ${segments.length} are there`,
-    );
-  }
-  const byKey = new Map<string, number>([["all", 0]]);
-  for (const { slice, events } of segments) {
-    const key = slice === "all" ? "all" : slice.slice(0, slice.indexOf("="));
-    byKey.set(key, (byKey.get(key) ?? 0) + events);
-  }
-  for (const [key, events] of byKey) {
-    if (events !== set.events) {
-      findings.add(
-        2,
-        where,
-        `${range}: the segments of ${key} hold ${events} events, the checkpoint counted ${set.events}`,
-      );
-    }
-  }
-}
-
-/** Checkpoints and segments that belong to nothing. */
-async function auditStrays(
-  db: Kysely<Tables>,
-  stream: string,
-  partitions: readonly PartitionTable[],
-  findings: Findings,
-): Promise<void> {
-  const known = new Set(partitions.map(partitionName));
+/** Checkpoints and segments that belong to nothing. One statement each, so each sees one moment. */
+async function auditStrays(db: Kysely<Tables>, stream: string, findings: Findings): Promise<void> {
   const sets = await db
     .selectFrom("segment_set")
-    .select(["topic", "partition"])
+    .leftJoin("partition", (join) =>
+      join
+        .onRef("partition.stream", "=", "segment_set.stream")
+        .onRef("partition.topic", "=", "segment_set.topic")
+        .onRef("partition.partition", "=", "segment_set.partition"),
+    )
+    .select(["segment_set.topic", "segment_set.partition"])
     .distinct()
-    .where("stream", "=", stream)
+    .where("segment_set.stream", "=", stream)
+    .where("partition.stream", "is", null)
     .execute();
-  for (const set of sets) {
-    if (!known.has(partitionName(set)))
-      findings.add(1, partitionName(set), "there are checkpoints but no partition");
-  }
+  for (const set of sets) findings.add(1, partitionName(set), "there are checkpoints but no partition");
   const strays = await db
     .selectFrom("segment")
     .leftJoin("segment_set", "segment_set.id", "segment.set_id")
@@ -148,6 +110,7 @@ async function auditStrays(
     .where("segment_set.id", "is", null)
     .limit(PAGE)
     .execute();
-  for (const stray of strays)
+  for (const stray of strays) {
     findings.add(1, `segment ${stray.id}`, `the checkpoint of this segment (${stray.slice}) is gone`);
+  }
 }
