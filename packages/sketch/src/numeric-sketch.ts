@@ -20,6 +20,7 @@ import type { ThresholdCounts, ThresholdSet } from "./threshold-counter.js";
 export const FLUSH_SIZE = 2048;
 
 const FIRST_BUFFER = 16;
+const NOTHING = new Float64Array(0);
 
 export interface SketchOptions {
   /** Working compression δ, default 200 (about 270 clusters; 130 when encoded). */
@@ -45,7 +46,7 @@ export interface SketchOptions {
  */
 export class NumericSketch {
   #state: SketchState;
-  #buffer: Float64Array = new Float64Array(0);
+  #buffer: Float64Array = NOTHING;
   #buffered = 0;
   /** State with the buffer flushed, and its knots; forgotten at the next value. */
   #view: SketchState | null = null;
@@ -200,7 +201,7 @@ export class NumericSketch {
   sizeInBytes(): number {
     const state = this.#state;
     const view = this.#view === null || this.#view === state ? 0 : 16 * this.#view.means.length;
-    const knots = this.#knots === null ? 0 : 40 * this.#knots.values.length;
+    const knots = this.#knots === null ? 0 : 64 * this.#knots.values.length;
     return (
       400 + 16 * state.means.length + 8 * this.#buffer.length + 64 * state.atoms.rows.length + view + knots
     );

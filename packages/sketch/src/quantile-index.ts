@@ -1,5 +1,7 @@
 import type { CdfKnots } from "./cdf-knots.js";
 
+const PARTS_PER_KNOT = 4;
+
 /**
  * The quantile function of knots, with a table that says where to begin the search: 10 ns a call at 140 knots,
  * where a binary search takes 30.
@@ -14,6 +16,8 @@ export class QuantileIndex {
   readonly #lastRank: number;
   readonly #firstPlaces: Float64Array;
   readonly #lastPlaces: Float64Array;
+  /** One over the width, in places, of the stretch before each knot; 1 in an exact sample. */
+  readonly #perPlace: Float64Array;
   /** For each of the equal parts of [0, 1], the first knot whose last place is not before it. */
   readonly #starts: Uint32Array;
   readonly #parts: number;
@@ -24,15 +28,17 @@ export class QuantileIndex {
     this.#lastRank = knots.n - 1;
     this.#firstPlaces = new Float64Array(size);
     this.#lastPlaces = new Float64Array(size);
+    this.#perPlace = new Float64Array(size);
     for (let i = 0; i < size; i++) {
       const below = knots.below[i]!;
       const upTo = knots.upTo[i]!;
       const jumps = upTo - below >= 1;
       this.#firstPlaces[i] = jumps ? below : (below + upTo) / 2 - 0.5;
       this.#lastPlaces[i] = jumps ? upTo - 1 : (below + upTo) / 2 - 0.5;
+      if (i > 0) this.#perPlace[i] = 1 / (this.#firstPlaces[i]! - this.#lastPlaces[i - 1]!);
     }
     // A power of two, so that part / parts is exact and never after the rank that falls into the part.
-    this.#parts = 2 ** Math.ceil(Math.log2(2 * size));
+    this.#parts = 2 ** Math.ceil(Math.log2(PARTS_PER_KNOT * size));
     this.#starts = new Uint32Array(this.#parts + 1);
     let knot = 0;
     for (let part = 0; part <= this.#parts; part++) {
@@ -52,8 +58,8 @@ export class QuantileIndex {
     const first = this.#firstPlaces[knot]!;
     const b = values[knot]!;
     if (knot === 0 || first <= place) return b;
-    const from = lastPlaces[knot - 1]!;
-    const share = Math.min(1, Math.max(0, (place - from) / (first - from)));
+    const along = (place - lastPlaces[knot - 1]!) * this.#perPlace[knot]!;
+    const share = along > 0 ? Math.min(1, along) : 0;
     const a = values[knot - 1]!;
     const difference = b - a;
     // a + share·difference is exact at both ends and overflows only for values near ±MAX_VALUE.
