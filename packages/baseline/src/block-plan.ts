@@ -14,7 +14,7 @@ export interface BlockPlan {
 /** Most blocks: 200 give the sway at scales up to 9 blocks with at least 7 replicates and room to spare. */
 const MOST_BLOCKS = 200;
 const FEWEST_BLOCKS = 8;
-/** Most parts that blocks may have together, for they are stored: some 20 MB. */
+/** Most parts that blocks may have together, for they are stored: some 60 MB. */
 const MOST_BLOCK_PARTS = 20_000;
 const FEWEST_ROWS_IN_BLOCK = 500;
 

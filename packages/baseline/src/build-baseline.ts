@@ -16,6 +16,7 @@ import { hashFiles, RowTable } from "./files/row-table.js";
 import { findTrainingFiles } from "./files/training-files.js";
 import { atomValues, thresholdValues } from "./freeze-values.js";
 import { MOORLINE_VERSION } from "./moorline-version.js";
+import { OWN_THRESHOLDS } from "./own-thresholds.js";
 import type { OnProgress, ReadProgress } from "./read-progress.js";
 import { SketchGrid } from "./sketch-grid.js";
 import { planSlices, type SlicePlan } from "./slice-plan.js";
@@ -24,8 +25,6 @@ import { planSlices, type SlicePlan } from "./slice-plan.js";
 export const BASELINE_COMPRESSION = 500;
 /** Compression of a block: exact up to 400 values, and small, for there are many. */
 export const BLOCK_COMPRESSION = 100;
-/** Thresholds inside the parts: the id of the baseline is not known before they are made. */
-const OWN_THRESHOLDS = "own";
 
 export interface BaselineRequest {
   readonly stream: StreamConfig;

@@ -100,7 +100,9 @@ class Gathered {
   ): void {
     if (rows.length === 0) return;
     const sketches = rows.map((row) => NumericSketch.decode(row.body));
-    const whole = NumericSketch.merge(sketches, { compression: BASELINE_COMPRESSION });
+    // Thresholds are frozen from what is kept, so that whoever reads it freezes the same ones.
+    const body = NumericSketch.merge(sketches, { compression: BASELINE_COMPRESSION }).encode();
+    const whole = NumericSketch.decode(body);
     const { events } = whole.counts;
     if (slice !== "all" && events < LEAST_SLICE_ROWS) {
       if (!this.leftOut.some((left) => left.slice === slice)) this.leftOut.push({ slice, rows: events });
@@ -110,10 +112,10 @@ class Gathered {
     if (slice === "all") this.#whole.set(feature, whole);
     this.#keep(this.thresholds, slice, feature, thresholdValues(whole));
     this.#keep(this.atoms, slice, feature, atomValues(whole));
-    this.parts.push({ slice, feature, block: -1, body: whole.encode() });
+    this.parts.push({ slice, feature, block: -1, body });
     for (const [block, members] of groupBy(sketches, (_, i) => blockOf(rows[i]!.startMs))) {
-      const body = NumericSketch.merge(members, { compression: BLOCK_COMPRESSION }).encode();
-      this.parts.push({ slice, feature, block, body });
+      const merged = NumericSketch.merge(members, { compression: BLOCK_COMPRESSION });
+      this.parts.push({ slice, feature, block, body: merged.encode() });
     }
   }
 

@@ -2,6 +2,7 @@ import { MoorlineError } from "@moorline/errors";
 import { NumericSketch } from "@moorline/sketch";
 import type { NumericSide } from "@moorline/stats";
 import type { BaselinePart, Store } from "@moorline/store";
+import { OWN_THRESHOLDS } from "./own-thresholds.js";
 
 /** The whole of a baseline for one feature, as a side of a comparison. */
 export interface BaselineSide {
@@ -38,20 +39,25 @@ async function wholePart(
   return part;
 }
 
-/** A stored part as a side; its threshold counts carry the baseline's id, as those of segments do. */
+/**
+ * A stored part as a side; its threshold counts carry the baseline's id, as those of segments do. A part that was merged from windows still
+ * has the counts of the baseline that those were counted for: they say nothing of this one.
+ */
 export function sideOfPart(part: BaselinePart, baselineId: string): NumericSide {
-  return sideOfSketch(NumericSketch.decode(part.body), baselineId);
+  const side = sideOfSketch(NumericSketch.decode(part.body));
+  const counts = side.thresholdCounts;
+  const own = counts != null && counts.id === OWN_THRESHOLDS;
+  return { ...side, thresholdCounts: own ? { ...counts, id: baselineId } : null };
 }
 
-/** A sketch as a side of a comparison. `thresholdsId` names the baseline that its thresholds are of, where they are its own. */
-export function sideOfSketch(sketch: NumericSketch, thresholdsId?: string): NumericSide {
+/** A sketch as a side of a comparison. */
+export function sideOfSketch(sketch: NumericSketch): NumericSide {
   const { events, finite, missing } = sketch.counts;
-  const counts = sketch.thresholdCounts();
   return {
     cdf: sketch.toCdf(),
     events,
     missing,
     nonFinite: events - finite - missing,
-    thresholdCounts: counts === null ? null : { ...counts, id: thresholdsId ?? counts.id },
+    thresholdCounts: sketch.thresholdCounts(),
   };
 }
