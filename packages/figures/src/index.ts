@@ -1,1 +1,5 @@
-export {};
+export { countText, numberText, rankText } from "./number-text.js";
+export { markerKind } from "./qq-marker.js";
+export { type PlottedPair, QqPlot, type QqPlotData } from "./qq-plot.js";
+export { qqPlotSvg } from "./render-svg.js";
+export { type AxisKind, chooseAxis, valueScale } from "./value-scale.js";
