@@ -8,6 +8,7 @@ export const ALLOWED_IMPORTS = {
   store: ["errors", "sketch"],
   windows: ["errors", "sketch", "store"],
   baseline: ["errors", "sketch", "stats", "store", "config", "windows"],
+  answers: ["errors", "sketch", "stats", "store", "config", "windows", "baseline"],
   figures: ["errors", "stats"],
   telemetry: ["errors"],
   collector: ["*"],

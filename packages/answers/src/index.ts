@@ -1,0 +1,2 @@
+export { compareFeature, type FeatureComparison } from "./feature-comparison.js";
+export { type PairsAnswer, type PairsRequest, readPairs, type TimeRange } from "./read-pairs.js";
