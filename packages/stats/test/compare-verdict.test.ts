@@ -73,7 +73,11 @@ describe("compareVerdict(comparison)", () => {
   test("compareVerdict sees a zero share that grew where no quantile moved: 30 to 45 % zeros of a binary feature", () => {
     const zeros = (share: number) =>
       numericSideOf(Array.from({ length: 1000 }, (_, i) => (i < share * 1000 ? 0 : 1)));
-    expect(compareVerdict(compareNumeric(zeros(0.3), zeros(0.45))).state).toBe("adrift");
+    const verdict = compareVerdict(compareNumeric(zeros(0.3), zeros(0.45)));
+    expect(verdict).toMatchObject({
+      state: "adrift",
+      place: { part: "body", rank: 0.25, direction: "lower" },
+    });
     expect(compareVerdict(compareNumeric(zeros(0.3), zeros(0.31))).state).toBe("holding");
   });
 

@@ -29,23 +29,36 @@ const rangeOf = (n: number, m: number, rank: number, confidence: keyof typeof LE
   countRange(sized(n), sized(m), rank, { confidence, designEffect: 1 });
 
 describe("countRange(baseline, production, rank)", () => {
-  test("countRange cuts the exact law of the count at its level, on both sides", () => {
-    const size = fc.integer({ min: 1, max: 60 });
-    const rank = fc.constantFrom(0.01, 0.05, 0.1, 0.25, 0.5);
-    fc.assert(
-      fc.property(size, size, rank, fc.constantFrom(0.95, 0.99, 0.999), (n, m, p, confidence) => {
-        const level = LEVELS[confidence as keyof typeof LEVELS];
-        const { lowest, highest } = rangeOf(n, m, p, confidence as keyof typeof LEVELS);
-        const j = Math.floor((n - 1) * p) + 1;
-        const next = Math.min(j + 1, n);
-        if (lowest > 0) expect(countAtMost(lowest - 1, j, n, m)).toBeLessThanOrEqual(level * (1 + 1e-6));
-        expect(countAtMost(lowest, j, n, m)).toBeGreaterThan(level * (1 - 1e-6));
-        expect(1 - countAtMost(highest, next, n, m)).toBeLessThanOrEqual(level + 1e-11);
-        if (highest > 0) expect(1 - countAtMost(highest - 1, next, n, m)).toBeGreaterThan(level - 1e-11);
-      }),
-      PROPERTY,
-    );
-  });
+  // Small windows are summed in production's count, large ones in the baseline's.
+  test.each([
+    { name: "small", most: 60, ranks: [0.01, 0.05, 0.1, 0.25, 0.5] },
+    { name: "large", most: 900, ranks: [0.3, 0.5] },
+  ])(
+    "countRange cuts the exact law of the count at its level, on both sides: $name windows",
+    ({ most, ranks }) => {
+      const size = fc.integer({ min: 1, max: 60 });
+      const rank = fc.constantFrom(...ranks);
+      fc.assert(
+        fc.property(
+          size,
+          fc.integer({ min: most / 4, max: most }),
+          rank,
+          fc.constantFrom(0.95, 0.99, 0.999),
+          (n, m, p, confidence) => {
+            const level = LEVELS[confidence as keyof typeof LEVELS];
+            const { lowest, highest } = rangeOf(n, m, p, confidence as keyof typeof LEVELS);
+            const j = Math.floor((n - 1) * p) + 1;
+            const next = Math.min(j + 1, n);
+            if (lowest > 0) expect(countAtMost(lowest - 1, j, n, m)).toBeLessThanOrEqual(level * (1 + 1e-6));
+            expect(countAtMost(lowest, j, n, m)).toBeGreaterThan(level * (1 - 1e-6));
+            expect(1 - countAtMost(highest, next, n, m)).toBeLessThanOrEqual(level + 1e-11);
+            if (highest > 0) expect(1 - countAtMost(highest - 1, next, n, m)).toBeGreaterThan(level - 1e-11);
+          },
+        ),
+        PROPERTY,
+      );
+    },
+  );
 
   test("countRange at a rank mirrors that at its complement", () => {
     for (const [n, m, rank] of [

@@ -40,6 +40,13 @@ describe("incompleteBeta(x, a, b)", () => {
     expect(incompleteBeta(x, 2, 3)).toBe(expected);
   });
 
+  test.each([1, 30, 1e3, 1e5, 1e7])(
+    "incompleteBeta(½, %d, the same) is ½: the fraction has terms enough",
+    (a) => {
+      expect(incompleteBeta(0.5, a, a)).toBeCloseTo(0.5, 9);
+    },
+  );
+
   test("incompleteBeta(x, 1, 1) is x and incompleteBeta(x, ½, ½) the arcsine law", () => {
     for (const x of [1e-9, 0.1, 0.5, 0.73, 1 - 1e-9]) {
       expect(incompleteBeta(x, 1, 1)).toBeCloseTo(x, 13);

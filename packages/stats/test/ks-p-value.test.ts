@@ -88,6 +88,12 @@ describe("ksPValue(input)", () => {
     );
   });
 
+  test.each([1.18, 1.3, 1.8, 3])("kolmogorovTail(%d) is the alternating series, term by term", (lambda) => {
+    const term = (j: number) => Math.exp(-2 * j * j * lambda * lambda);
+    const series = 2 * (term(1) - term(2) + term(3) - term(4) + term(5));
+    expect(kolmogorovTail(lambda) / series).toBeCloseTo(1, 13);
+  });
+
   test("kolmogorovTail falls from 1 to 0 without a step at the seam of its two series", () => {
     let previous = 1;
     for (let lambda = 0; lambda < 5; lambda += 0.01) {
