@@ -2,6 +2,7 @@ import { MoorlineError } from "@moorline/errors";
 import { checkNames } from "./check-names.js";
 import type { Engine } from "./engine/engine.js";
 import { bodyBytes, inChunks } from "./in-chunks.js";
+import { inOrder } from "./in-order.js";
 import { insertLogbook } from "./logbook-store.js";
 import type { BaselineTable } from "./schema.js";
 import type { BaselineRecord, BaselineStore } from "./store.js";
@@ -72,7 +73,7 @@ export function baselineStore({ db }: Engine): BaselineStore {
       if (filter.slice !== undefined) select = select.where("slice", "=", filter.slice);
       if (filter.feature !== undefined) select = select.where("feature", "=", filter.feature);
       if (filter.block !== undefined) select = select.where("block", "=", filter.block);
-      return select.orderBy("slice").orderBy("feature").orderBy("block").execute();
+      return inOrder(await select.execute(), (part) => [part.slice, part.feature, part.block]);
     },
 
     activate: (stream, id, by, atMs) =>

@@ -1,4 +1,5 @@
 import type { Engine } from "./engine/engine.js";
+import { inOrder } from "./in-order.js";
 import { leases } from "./leases.js";
 import type { EvaluationTable, FeatureStateTable } from "./schema.js";
 import type { EvaluationRow, EvaluationStore, FeatureState, FeatureStateRow } from "./store.js";
@@ -25,15 +26,8 @@ export function evaluationStore({ db }: Engine): EvaluationStore {
     },
 
     states: async (stream) => {
-      const rows = await db
-        .selectFrom("feature_state")
-        .selectAll()
-        .where("stream", "=", stream)
-        .orderBy("feature")
-        .orderBy("slice")
-        .orderBy("horizon")
-        .execute();
-      return rows.map(stateRow);
+      const rows = await db.selectFrom("feature_state").selectAll().where("stream", "=", stream).execute();
+      return inOrder(rows, (row) => [row.feature, row.slice, row.horizon]).map(stateRow);
     },
 
     evaluations: async (query) => {
@@ -47,13 +41,15 @@ export function evaluationStore({ db }: Engine): EvaluationStore {
       if (query.slice !== undefined) select = select.where("slice", "=", query.slice);
       if (query.feature !== undefined) select = select.where("feature", "=", query.feature);
       if (query.baselineId !== undefined) select = select.where("baseline_id", "=", query.baselineId);
-      const rows = await select
-        .orderBy("window_end_ms")
-        .orderBy("slice")
-        .orderBy("feature")
-        .orderBy("horizon")
-        .execute();
-      return rows.map(evaluationRow);
+      const rows = await select.execute();
+      const ordered = inOrder(rows, (row) => [
+        row.window_end_ms,
+        row.slice,
+        row.feature,
+        row.horizon,
+        row.baseline_id,
+      ]);
+      return ordered.map(evaluationRow);
     },
 
     commit: (batch) => db.transaction().execute((transaction) => writeEvaluationCommit(transaction, batch)),

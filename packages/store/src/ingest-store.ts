@@ -1,6 +1,7 @@
 import { checkCheckpoint } from "./check-checkpoint.js";
 import { checkNames } from "./check-names.js";
 import type { Engine } from "./engine/engine.js";
+import { inOrder } from "./in-order.js";
 import { insertLogbook } from "./logbook-store.js";
 import { keyColumns, ofPartition, partitionName } from "./partition-key.js";
 import type { PartitionTable } from "./schema.js";
@@ -81,14 +82,8 @@ export function ingestStore({ db }: Engine): IngestStore {
       }),
 
     partitions: async (stream) => {
-      const rows = await db
-        .selectFrom("partition")
-        .selectAll()
-        .where("stream", "=", stream)
-        .orderBy("topic")
-        .orderBy("partition")
-        .execute();
-      return rows.map(partitionRow);
+      const rows = await db.selectFrom("partition").selectAll().where("stream", "=", stream).execute();
+      return inOrder(rows, (row) => [row.topic, row.partition]).map(partitionRow);
     },
 
     gaps: async (stream) => {

@@ -1,6 +1,8 @@
+import type { Kysely } from "kysely";
 import type { Engine } from "./engine/engine.js";
-import type { RollupTable } from "./schema.js";
-import type { PaneStore, RollupLevel, RollupRow } from "./store.js";
+import { inOrder } from "./in-order.js";
+import type { RollupTable, Tables } from "./schema.js";
+import type { PaneStore, PendingPane, RollupLevel, RollupRow } from "./store.js";
 
 /** Panes: segments that wait for their rollup, and rollups. */
 export function paneStore({ db }: Engine): PaneStore {
@@ -13,22 +15,12 @@ export function paneStore({ db }: Engine): PaneStore {
         .groupBy("pane_start_ms")
         .orderBy("pane_start_ms")
         .execute();
-      if (rows.length === 0) return [];
-      const rolledUp = await db
-        .selectFrom("rollup")
-        .select("start_ms")
-        .distinct()
-        .where("stream", "=", stream)
-        .where("level", "=", "pane")
-        .where("start_ms", ">=", rows[0]!.pane_start_ms)
-        .where("start_ms", "<=", rows.at(-1)!.pane_start_ms)
-        .execute();
-      const known = new Set(rolledUp.map((row) => row.start_ms));
-      return rows.map((row) => ({
-        paneStartMs: row.pane_start_ms,
-        segments: Number(row.segments),
-        rolledUp: known.has(row.pane_start_ms),
-      }));
+      const panes: PendingPane[] = [];
+      for (const row of rows) {
+        const rolledUp = await isRolledUp(db, stream, row.pane_start_ms);
+        panes.push({ paneStartMs: row.pane_start_ms, segments: Number(row.segments), rolledUp });
+      }
+      return panes;
     },
 
     segmentSlices: async (stream, paneStartMs) => {
@@ -56,13 +48,13 @@ export function paneStore({ db }: Engine): PaneStore {
         .where("segment.stream", "=", stream)
         .where("segment.pane_start_ms", "=", paneStartMs);
       if (slice !== undefined) select = select.where("segment.slice", "=", slice);
-      const rows = await select
-        .orderBy("segment_set.topic")
-        .orderBy("segment_set.partition")
-        .orderBy("segment_set.from_offset")
-        .orderBy("segment.slice")
-        .orderBy("segment.id")
-        .execute();
+      const rows = inOrder(await select.execute(), (row) => [
+        row.topic,
+        row.partition,
+        row.from_offset,
+        row.slice,
+        row.id,
+      ]);
       return rows.map((row) => ({
         id: row.id,
         slice: row.slice,
@@ -85,35 +77,47 @@ export function paneStore({ db }: Engine): PaneStore {
         .where("start_ms", "<", query.toMs);
       if (query.slice !== undefined) select = select.where("slice", "=", query.slice);
       if (query.feature !== undefined) select = select.where("feature", "=", query.feature);
-      const rows = await select.orderBy("start_ms").orderBy("slice").orderBy("feature").execute();
-      return rows.map(rollupRow);
+      const rows = await select.execute();
+      return inOrder(rows, (row) => [row.start_ms, row.slice, row.feature]).map(rollupRow);
     },
 
     slices: async (stream) => {
-      const rows = await db
-        .selectFrom("rollup")
-        .select("slice")
-        .distinct()
-        .where("stream", "=", stream)
-        .execute();
+      const rows = await db.selectFrom("stream_slice").select("slice").where("stream", "=", stream).execute();
       return allFirst(rows.map((row) => row.slice));
     },
 
     extent: async (stream) => {
-      const row = await db
-        .selectFrom("rollup")
-        .select((eb) => [eb.fn.min("start_ms").as("first"), eb.fn.max("start_ms").as("last")])
-        .where("stream", "=", stream)
-        .where("level", "=", "pane")
-        .executeTakeFirst();
-      return row?.first == null ? null : { firstPaneMs: Number(row.first), lastPaneMs: Number(row.last) };
+      const firstPaneMs = await endOfPanes(db, stream, "asc");
+      const lastPaneMs = await endOfPanes(db, stream, "desc");
+      return firstPaneMs === null || lastPaneMs === null ? null : { firstPaneMs, lastPaneMs };
     },
   };
 }
 
+/** Reads one row of the index, however many rollups the pane has. */
+async function isRolledUp(db: Kysely<Tables>, stream: string, paneStartMs: number): Promise<boolean> {
+  const rollups = db
+    .selectFrom("rollup")
+    .select("start_ms")
+    .where("stream", "=", stream)
+    .where("level", "=", "pane");
+  return (await rollups.where("start_ms", "=", paneStartMs).limit(1).execute()).length > 0;
+}
+
+/** The first or last pane with a rollup, from one end of the index: a minimum and maximum together would read all of it. */
+async function endOfPanes(db: Kysely<Tables>, stream: string, order: "asc" | "desc"): Promise<number | null> {
+  const rollups = db
+    .selectFrom("rollup")
+    .select("start_ms")
+    .where("stream", "=", stream)
+    .where("level", "=", "pane");
+  const row = await rollups.orderBy("start_ms", order).limit(1).executeTakeFirst();
+  return row === undefined ? null : row.start_ms;
+}
+
 /** `all` first, then by name. */
 function allFirst(slices: readonly string[]): readonly string[] {
-  return slices.toSorted((a, b) => Number(b === "all") - Number(a === "all") || (a < b ? -1 : 1));
+  return inOrder(slices, (slice) => [slice === "all" ? 0 : 1, slice]);
 }
 
 function rollupRow(row: RollupTable): RollupRow {
