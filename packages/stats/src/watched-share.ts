@@ -29,7 +29,7 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
     for (const share of comparison.shares) {
       watched.push({
         key: `p${share.rank}`,
-        part: partOf(share.rank, share.expected),
+        part: partOfRank(share.rank),
         rank: share.rank,
         value: share.value,
         expected: share.expected,
@@ -55,14 +55,6 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
     });
   }
   return watched;
-}
-
-/**
- * Which part a threshold speaks for: that of its rank, unless repeated values bring the share there up into the body
- * (a feature with 30 % zeros has its p1 at 0, and .3 of its values at or below).
- */
-function partOf(rank: number, expected: number): WatchedShare["part"] {
-  return expected >= 0.1 && expected <= 0.9 ? "body" : partOfRank(rank);
 }
 
 /** Orders shares for being spoken of: furthest first; at equal |z| (thresholds that share a value) the body, then the fitting rank. */
