@@ -1,5 +1,5 @@
 import { NumericSketch } from "@moorline/sketch";
-import { type NumericSide, numericSideOf } from "@moorline/stats";
+import { cdfOf, type NumericSide } from "@moorline/stats";
 import { DuckdbSession } from "./files/duckdb-session.js";
 import { type FileColumn, listColumns } from "./files/file-columns.js";
 import { matchColumn } from "./files/match-column.js";
@@ -68,7 +68,7 @@ export class FileSides {
   async side(featureIndex: number, sliceValue: string | null): Promise<NumericSide> {
     const where = sliceValue === null ? "" : ` where s0 = ${sqlText(sliceValue)}`;
     const result = await this.#session.connection.stream(`select f${featureIndex} from rows${where}`);
-    const take = this.rows <= MOST_EXACT_ROWS ? new ExactValues() : new SketchedValues();
+    const take = this.rows <= MOST_EXACT_ROWS ? new ExactValues(this.rows) : new SketchedValues();
     for (;;) {
       const chunk = await result.fetchChunk();
       if (chunk === null || chunk.rowCount === 0) return take.side();
@@ -81,15 +81,32 @@ export class FileSides {
   }
 }
 
+/** Finite values as they are, the rest counted by kind. */
 class ExactValues {
-  readonly #values: (number | null)[] = [];
+  readonly #finite: Float64Array;
+  #count = 0;
+  #missing = 0;
+  #nonFinite = 0;
+
+  constructor(mostRows: number) {
+    this.#finite = new Float64Array(mostRows);
+  }
 
   add(values: readonly (number | null)[]): void {
-    for (const value of values) this.#values.push(value);
+    for (const value of values) {
+      if (value === null) this.#missing++;
+      else if (Number.isFinite(value)) this.#finite[this.#count++] = value;
+      else this.#nonFinite++;
+    }
   }
 
   side(): NumericSide {
-    return numericSideOf(this.#values);
+    return {
+      cdf: cdfOf(this.#finite.subarray(0, this.#count)),
+      events: this.#count + this.#missing + this.#nonFinite,
+      missing: this.#missing,
+      nonFinite: this.#nonFinite,
+    };
   }
 }
 

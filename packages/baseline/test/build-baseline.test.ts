@@ -262,7 +262,7 @@ describe("buildBaseline", () => {
       "text among the numbers",
       "text.csv",
       "cargo_temp,doors\n1,0\nwarm,1\ncold,1\n",
-      /column cargo_temp of .* holds 2 values that are no numbers, such as "warm"/,
+      /column cargo_temp of .* is no number in 2 of its values, such as "warm"/,
     ],
     ["a feature without a value", "empty.csv", "cargo_temp,doors\n1,\n2,\n", /no value of doors/],
     ["no row", "none.csv", "cargo_temp,doors\n", /no value of cargo_temp, doors/],

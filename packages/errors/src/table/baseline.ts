@@ -29,7 +29,7 @@ export const BASELINE_ERRORS = errorRows({
   },
   MOORLINE_INPUT_FILE_NOT_NUMBERS: {
     category: "INPUT",
-    template: "column {column} of {file} holds {count} values that are no numbers, such as {example}",
+    template: "column {column} of {file} is no number in {count} of its values, such as {example}",
     hint: "make them numbers, or leave them empty where there is no value",
   },
   MOORLINE_INPUT_BASELINE_EMPTY: {
