@@ -5,6 +5,7 @@ import { DatabaseSync } from "@photostructure/sqlite";
 import { type Driver, Kysely, SqliteDialect, type TransactionSettings } from "kysely";
 import type { Tables } from "../schema.js";
 import type { Engine } from "./engine.js";
+import { EventLoopTurn } from "./event-loop-turn.js";
 import { isSqliteBusy } from "./sqlite-code.js";
 import { StoreDriver } from "./store-driver.js";
 
@@ -63,6 +64,7 @@ class StoreSqliteDialect extends SqliteDialect {
       beginSql,
       isBusy: isSqliteBusy,
       busyPatienceMs: BUSY_PATIENCE_MS,
+      turn: new EventLoopTurn(),
     });
   }
 }

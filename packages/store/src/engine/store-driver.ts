@@ -9,6 +9,7 @@ import {
 } from "kysely";
 import { fromStoredText, toStoredText } from "../stored-text.js";
 import { CommitUnanswered } from "./commit-unanswered.js";
+import type { EventLoopTurn } from "./event-loop-turn.js";
 
 export interface StoreDriverOptions {
   /** How a transaction begins, where the driver's own way will not do. */
@@ -17,6 +18,8 @@ export interface StoreDriverOptions {
   readonly isBusy: (error: unknown) => boolean;
   /** How long it is tried again. */
   readonly busyPatienceMs: number;
+  /** For an engine that answers without leaving the thread. */
+  readonly turn?: EventLoopTurn;
 }
 
 const BUSY_STEP_MS = 10;
@@ -88,6 +91,7 @@ class StoreConnection implements DatabaseConnection {
   ) {}
 
   async executeQuery<R>(query: CompiledQuery): Promise<QueryResult<R>> {
+    await this.options.turn?.give();
     const stored = { ...query, parameters: query.parameters.map(toStored) };
     try {
       const result = await this.#patiently(() => this.inner.executeQuery<R>(stored));
