@@ -9,20 +9,10 @@ function addGates(add, java) {
   for (const [name, f] of Object.entries(add)) {
     const atoms = name === "70 % zeros";
     if (java) {
-      rows.push([
-        `add vs Java, flush 2048, ${name}`,
-        f.javaMergingDigest / f.columnFlush2048,
-        "atLeast",
-        4,
-        6,
-      ]);
-      rows.push([
-        `add vs Java, flush 1024, ${name}`,
-        f.javaMergingDigest / f.columnFlush1024,
-        "atLeast",
-        4,
-        4,
-      ]);
+      const vsJava = (nanos) => [f.javaMergingDigest / nanos, "atLeast", 4];
+      rows.push([`add vs Java, ${name}`, ...vsJava(f.column), 6]);
+      rows.push([`add vs Java, were the flush 2048, ${name}`, ...vsJava(f.columnFlush2048), 6]);
+      rows.push([`add vs Java, were the flush 1024, ${name}`, ...vsJava(f.columnFlush1024), 4]);
     }
     rows.push([`add vs npm tdigest, ${name}`, f.npmTdigest / f.column, "atLeast", atoms ? 12 : 20, 30]);
     const [gate, target] = atoms ? [0.55, 0.4] : [0.4, 0.25];
@@ -33,7 +23,7 @@ function addGates(add, java) {
       gate,
       target,
     ]);
-    rows.push([`add / own sort floor, ${name}`, f.column / f.sortFloor2048, "atMost", 2.2, 1.5]);
+    rows.push([`add / own sort floor, ${name}`, f.column / f.sortFloor4096, "atMost", 2.2, 1.5]);
     rows.push([`add(value) / add(column), ${name}`, f.value / f.column, "atMost", 1.6, 1.3]);
   }
   return rows;

@@ -85,9 +85,11 @@ const CONTENDERS = {
   column: (values) => cpuNanos(() => addColumn(values)) / VALUES,
   columnFlush1024: (values) => cpuNanos(() => addWithFlushOf(values, 1_024)) / VALUES,
   columnFlush2048: (values) => cpuNanos(() => addWithFlushOf(values, 2_048)) / VALUES,
+  columnFlush4096: (values) => cpuNanos(() => addWithFlushOf(values, 4_096)) / VALUES,
   value: (values) => cpuNanos(() => addEach(values)) / VALUES,
   sortFloor1024: (values) => cpuNanos(() => sortFloor(values, 1_024)) / VALUES,
   sortFloor2048: (values) => cpuNanos(() => sortFloor(values, 2_048)) / VALUES,
+  sortFloor4096: (values) => cpuNanos(() => sortFloor(values, 4_096)) / VALUES,
   typedArraySort1024: (values) => cpuNanos(() => typedArraySort(values)) / VALUES,
   npmTdigest: (values) => cpuNanos(() => npmTdigest(values)) / SLOW_VALUES,
 };
@@ -124,9 +126,7 @@ export async function measureMergeAndQuantile(rounds, java, say) {
   const sealed = NumericSketch.decode(whole.encode());
   const runs = {};
   if (java) await java.load(values);
-  // V8 takes more than a million calls until it compiles a lookup for good.
-  for (let i = 0; i < 8; i++) quantiles(sealed);
-  for (let round = -2; round < rounds; round++) {
+  for (let round = -WARM_ROUNDS; round < rounds; round++) {
     note(runs, "pairwiseUs", cpuNanos(() => foldOf(parts)) / MERGED / 1_000, round);
     note(runs, "kWayUs", cpuNanos(() => NumericSketch.merge(parts).counts.finite) / MERGED / 1_000, round);
     note(runs, "quantileNs", cpuNanos(() => quantiles(sealed)) / CALLS, round);
@@ -142,6 +142,8 @@ export async function measureMergeAndQuantile(rounds, java, say) {
   return figures;
 }
 
+/** V8 and the JVM take some rounds until they have compiled for good. */
+const WARM_ROUNDS = 12;
 const CALLS = 200_000;
 
 function foldOf(parts) {

@@ -17,9 +17,11 @@ import { SketchState } from "./sketch-state.js";
 import type { ThresholdCounts, ThresholdSet } from "./threshold-counter.js";
 
 /** Finite values between two flushes. Flushes follow the sequence of values alone, so that a replay gives the same bytes. */
-export const FLUSH_SIZE = 2048;
+export const FLUSH_SIZE = 4096;
 
 const FIRST_BUFFER = 16;
+/** Buffers double up to this many values, then grow by as many: thousands of them are half full at a time. */
+const BUFFER_STEP = 1024;
 const NOTHING = new Float64Array(0);
 
 export interface SketchOptions {
@@ -244,7 +246,7 @@ export class NumericSketch {
   #growBuffer(needed: number): void {
     if (needed <= this.#buffer.length) return;
     let length = Math.max(FIRST_BUFFER, this.#buffer.length);
-    while (length < needed) length *= 2;
+    while (length < needed) length += Math.min(length, BUFFER_STEP);
     const grown = new Float64Array(length);
     grown.set(this.#buffer.subarray(0, this.#buffered));
     this.#buffer = grown;
