@@ -2,7 +2,7 @@ import { mkdtemp, rm } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { setTimeout as sleep } from "node:timers/promises";
-import { startCollector } from "@moorline/collector";
+import { registerCodecs, startCollector } from "@moorline/collector";
 import type { MoorlineConfig, StreamConfig } from "@moorline/config";
 import { openStore } from "@moorline/store";
 import { createTelemetry } from "@moorline/telemetry";
@@ -38,6 +38,7 @@ export async function readAs(contender: Contender, task: ContenderTask): Promise
 }
 
 async function prepareConsumer(task: ContenderTask, parse: boolean): Promise<() => Promise<number>> {
+  registerCodecs();
   const kafka = new Kafka({ brokers: [task.bootstrap], logLevel: logLevel.NOTHING });
   const consumer = kafka.consumer({ groupId: `measure-${process.pid}`, maxWaitTimeInMs: 300 });
   let events = 0;

@@ -1,7 +1,7 @@
 import zlib from "node:zlib";
 import { MoorlineError } from "@moorline/errors";
 import * as fzstd from "fzstd";
-import { CompressionCodecs, CompressionTypes } from "kafkajs";
+import kafkajs from "kafkajs";
 import { compressFrameSync, decompressFrameSync } from "lz4-napi";
 import snappy from "snappy";
 
@@ -16,6 +16,8 @@ const XERIAL_HEADER_BYTES = 16;
 
 /** Makes every codec of Kafka known to kafkajs, which knows gzip alone: a missing one ends the consumer for good. */
 export function registerCodecs(): void {
+  // By the default export: Node cannot see this name in the CommonJS module.
+  const { CompressionCodecs, CompressionTypes } = kafkajs;
   CompressionCodecs[CompressionTypes.Snappy] = () => snappyCodec;
   CompressionCodecs[CompressionTypes.LZ4] = () => lz4Codec;
   CompressionCodecs[CompressionTypes.ZSTD] = () => zstdCodec;

@@ -7,7 +7,8 @@ import { patchRequestQueue } from "./request-queue-patch.js";
 
 const CONNECTION_TIMEOUT_MS = 10_000;
 const REQUEST_TIMEOUT_MS = 30_000;
-const RETRIES = 10;
+/** Some seconds: then the supervisor says what is wrong and goes on trying. */
+const RETRIES = 5;
 
 /** A kafkajs client for one source, with the codecs and the patch that it needs, and its log in ours. */
 export function kafkaClient(config: KafkaSourceConfig, owner: string, logger: Logger): Kafka {

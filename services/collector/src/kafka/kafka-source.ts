@@ -7,7 +7,7 @@ import { ConsumerSession } from "./consumer-session.js";
 import { isKafkaError, kafkaAway } from "./kafka-client.js";
 
 const FIRST_WAIT_MS = 500;
-const LONGEST_WAIT_MS = 30_000;
+const LONGEST_WAIT_MS = 10_000;
 const STEP_MS = 100;
 /** A dead consumer's claims hold until another one takes them: what it counted is written if that is quick. */
 const LAST_CHECKPOINT_MS = 3_000;
