@@ -16,14 +16,19 @@ export type StoreAddress =
   | { readonly kind: "sqlite"; readonly path: string }
   | { readonly kind: "postgres"; readonly url: string };
 
+export interface StoreOptions {
+  /** How long a writer waits for other processes' transactions before the store is said to be busy; SQLite only. Default: 10 s. */
+  readonly busyPatienceMs?: number;
+}
+
 /**
  * Opens a store and brings its schema to this version's.
  *
  * @throws MOORLINE_UPSTREAM_STORE_AWAY when the file or server cannot be had
  * @throws MOORLINE_STATE_STORE_NEWER when a newer Moorline wrote it
  */
-export async function openStore(address: StoreAddress): Promise<Store> {
-  const engine = await openEngine(address);
+export async function openStore(address: StoreAddress, options: StoreOptions = {}): Promise<Store> {
+  const engine = await openEngine(address, options);
   const store = storeOf(engine);
   try {
     await store.migrate();
@@ -34,9 +39,11 @@ export async function openStore(address: StoreAddress): Promise<Store> {
   return store;
 }
 
-async function openEngine(address: StoreAddress): Promise<Engine> {
+async function openEngine(address: StoreAddress, options: StoreOptions): Promise<Engine> {
   try {
-    return address.kind === "sqlite" ? await sqliteEngine(address.path) : postgresEngine(address.url);
+    return address.kind === "sqlite"
+      ? await sqliteEngine(address.path, options)
+      : postgresEngine(address.url);
   } catch (error) {
     throw storeError(error);
   }

@@ -22,16 +22,20 @@ type Database = InstanceType<typeof DatabaseSync>;
 type KyselySqlite = Exclude<ConstructorParameters<typeof SqliteDialect>[0]["database"], () => unknown>;
 
 /** SQLite in one file: write-ahead log, every commit on disk before it is acknowledged. */
-export async function sqliteEngine(path: string): Promise<Engine> {
+export async function sqliteEngine(
+  path: string,
+  options: { readonly busyPatienceMs?: number } = {},
+): Promise<Engine> {
+  const busyPatienceMs = options.busyPatienceMs ?? BUSY_PATIENCE_MS;
   if (path !== MEMORY) mkdirSync(dirname(path), { recursive: true });
   const database = new DatabaseSync(path, { timeout: BUSY_TIMEOUT_MS, enableForeignKeyConstraints: true });
   try {
-    await useWriteAheadLog(database);
+    await useWriteAheadLog(database, busyPatienceMs);
   } catch (error) {
     database.close();
     throw error;
   }
-  const db = new Kysely<Tables>({ dialect: new StoreSqliteDialect({ database: forKysely(database) }) });
+  const db = new Kysely<Tables>({ dialect: new StoreSqliteDialect(forKysely(database), busyPatienceMs) });
   // The connection is handed over at the first query, and only then closed with Kysely.
   await db.connection().execute(async () => {});
   return {
@@ -44,8 +48,8 @@ export async function sqliteEngine(path: string): Promise<Engine> {
 }
 
 /** The change to a write-ahead log needs the file alone for a moment, and SQLite does not wait for that by itself. */
-async function useWriteAheadLog(database: Database): Promise<void> {
-  const until = performance.now() + BUSY_PATIENCE_MS;
+async function useWriteAheadLog(database: Database, patienceMs: number): Promise<void> {
+  const until = performance.now() + patienceMs;
   for (;;) {
     try {
       database.exec("PRAGMA journal_mode = WAL");
@@ -59,11 +63,18 @@ async function useWriteAheadLog(database: Database): Promise<void> {
 }
 
 class StoreSqliteDialect extends SqliteDialect {
+  readonly #busyPatienceMs: number;
+
+  constructor(database: KyselySqlite, busyPatienceMs: number) {
+    super({ database });
+    this.#busyPatienceMs = busyPatienceMs;
+  }
+
   override createDriver(): Driver {
     return new StoreDriver(super.createDriver(), {
       beginSql,
       isBusy: isSqliteBusy,
-      busyPatienceMs: BUSY_PATIENCE_MS,
+      busyPatienceMs: this.#busyPatienceMs,
       turn: new EventLoopTurn(),
     });
   }
@@ -109,8 +120,10 @@ class StatementCache {
       reader: statement.columns().length > 0,
       all: (parameters: readonly unknown[]) => statement.all(...(parameters as Values)),
       run: (parameters: readonly unknown[]) => statement.run(...(parameters as Values)),
-      iterate: (parameters: readonly unknown[]) =>
-        statement.iterate(...(parameters as Values)) as IterableIterator<unknown>,
+      // After a failed iteration the driver answers the next call with a row that was never written.
+      iterate: () => {
+        throw new Error("the store reads in pages, not in streams");
+      },
     } as Statement;
   }
 }
