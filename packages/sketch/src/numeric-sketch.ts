@@ -272,6 +272,9 @@ function flushInto(state: SketchState, values: Float64Array, from: number, count
   return true;
 }
 
+/** Objects and array headers of one sketch, measured. */
+const OBJECT_BYTES = 800;
+
 /** Atoms that are given up in a flush come back as entries. */
 const SLACK_ENTRIES = 64;
 
