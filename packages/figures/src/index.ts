@@ -1,5 +1,5 @@
 export { countText, numberText, rankText } from "./number-text.js";
 export { markerKind } from "./qq-marker.js";
-export { type PlottedPair, QqPlot, type QqPlotData } from "./qq-plot.js";
+export { FIGURE_STYLE, type PlottedPair, QqPlot, type QqPlotData, type QqPlotProps } from "./qq-plot.js";
 export { qqPlotSvg } from "./render-svg.js";
 export { type AxisKind, chooseAxis, valueScale } from "./value-scale.js";

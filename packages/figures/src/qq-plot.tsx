@@ -36,6 +36,12 @@ const AXIS_WORDS: Record<AxisKind, string> = {
   symlog: "symmetric logarithmic axes",
 };
 
+export interface QqPlotProps {
+  readonly data: QqPlotData;
+  /** True: the drawing brings its style; a page has it in its own style sheet, which a strict content policy asks for. */
+  readonly standalone?: boolean;
+}
+
 interface DrawnPair extends PlottedPair {
   readonly baseline: number;
   readonly production: number;
@@ -46,12 +52,13 @@ interface DrawnPair extends PlottedPair {
  * production's quantiles. Where the line leaves the band the two differ by more than chance: those marks are filled, the others hollow. The tails have
  * marks of their own, so nothing is told by colour alone.
  */
-export function QqPlot({ data }: { readonly data: QqPlotData }): VNode {
+export function QqPlot({ data, standalone = false }: QqPlotProps): VNode {
   const pairs = data.pairs.filter(
     (pair): pair is DrawnPair => pair.baseline !== null && pair.production !== null,
   );
   const title = `Q-Q plot of ${data.feature}`;
-  if (pairs.length === 0) return <EmptyPlot title={title} provenance={data.provenance} />;
+  if (pairs.length === 0)
+    return <EmptyPlot title={title} provenance={data.provenance} standalone={standalone} />;
   const values = pairs.flatMap((pair) => [pair.baseline, pair.production]);
   const kind = data.axis ?? chooseAxis(values);
   const x = valueScale(values, kind, [MARGIN.left, WIDTH - MARGIN.right]);
@@ -65,7 +72,7 @@ export function QqPlot({ data }: { readonly data: QqPlotData }): VNode {
     >
       <title>{title}</title>
       <desc>{description(pairs, data)}</desc>
-      <style>{STYLE}</style>
+      {standalone ? <style>{FIGURE_STYLE}</style> : null}
       <rect class="paper" width={WIDTH} height={HEIGHT} />
       <Axes x={x} y={y} data={data} />
       <Band pairs={pairs} x={x} y={y} />
@@ -87,7 +94,7 @@ export function QqPlot({ data }: { readonly data: QqPlotData }): VNode {
 }
 
 /** Follows the reader's light or dark; a page may set the custom properties itself. */
-const STYLE = `
+export const FIGURE_STYLE = `
 .moorline-figure { font-family: system-ui, "DejaVu Sans", sans-serif; font-size: 12px;
   --f-paper: var(--paper, #fdfcf9); --f-ink: var(--ink, #20262b); --f-faint: var(--faint, #6a737a); --f-band: var(--band, #cfd8dc); --f-mark: var(--mark, #0b5c7a); }
 @media (prefers-color-scheme: dark) { .moorline-figure { --f-paper: var(--paper, #14191c); --f-ink: var(--ink, #e6e9ea); --f-faint: var(--faint, #9aa5ab);
@@ -196,11 +203,16 @@ function RankLabels({ pairs, x, y }: Scales & { readonly pairs: readonly DrawnPa
   );
 }
 
-function EmptyPlot({ title, provenance }: { readonly title: string; readonly provenance: string }): VNode {
+function EmptyPlot(props: {
+  readonly title: string;
+  readonly provenance: string;
+  readonly standalone: boolean;
+}): VNode {
+  const { title, provenance, standalone } = props;
   return (
     <svg xmlns="http://www.w3.org/2000/svg" viewBox={`0 0 ${WIDTH} 120`} role="img" class="moorline-figure">
       <title>{title}</title>
-      <style>{STYLE}</style>
+      {standalone ? <style>{FIGURE_STYLE}</style> : null}
       <rect class="paper" width={WIDTH} height={120} />
       <text x={WIDTH / 2} y={52} text-anchor="middle">
         too few values for a quantile pair

@@ -1,1 +1,1 @@
-export {};
+export { type GatewayOptions, type RunningGateway, startGateway } from "./start-gateway.js";

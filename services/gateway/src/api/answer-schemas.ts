@@ -1,0 +1,153 @@
+import { z } from "./z.js";
+
+const time = z.string().openapi({ format: "date-time" });
+const state = z.enum(["holding", "straining", "adrift", "thin", "silent"]);
+const maybe = z.number().nullable();
+const both = <T extends z.ZodType>(inner: T) => z.object({ baseline: inner, production: inner });
+const range = z.object({ from: time, to: time });
+
+export const problem = z.object({
+  type: z.string(),
+  title: z.string(),
+  status: z.number(),
+  detail: z.string(),
+  hint: z.string().optional(),
+  code: z.string().optional(),
+});
+
+export const streamSummary = z.object({
+  name: z.string(),
+  features: z.number(),
+  slices: z.array(z.string()),
+  horizons: z.array(z.string()),
+  activeBaseline: z.object({ id: z.string(), since: time }).nullable(),
+  states: z.object({
+    adrift: z.number(),
+    straining: z.number(),
+    silent: z.number(),
+    thin: z.number(),
+    holding: z.number(),
+  }),
+  feed: z.object({
+    events: z.number(),
+    lateEvents: z.number(),
+    deadLetters: z.number(),
+    partitions: z.number(),
+    halted: z.array(z.object({ topic: z.string(), partition: z.number(), status: z.string() })),
+    lastEventAt: time.nullable(),
+    watermark: time.nullable(),
+    evaluatedAt: time.nullable(),
+  }),
+});
+export const streamList = z.object({ streams: z.array(streamSummary) });
+
+export const featureRow = z.object({
+  feature: z.string(),
+  kind: z.literal("numeric"),
+  unit: z.string().nullable(),
+  slice: z.string(),
+  horizon: z.string(),
+  state,
+  since: time,
+  window: range.nullable(),
+  reading: z.string(),
+  baselineId: z.string().nullable(),
+  amended: z.boolean(),
+  n: maybe,
+  missing: maybe,
+  ks: maybe,
+  wassersteinScaled: maybe,
+  tailRatio: z.object({ lower: maybe, upper: maybe }),
+});
+export const featureList = z.object({ stream: z.string(), features: z.array(featureRow) });
+
+const tail = z
+  .object({
+    rank: z.number(),
+    threshold: z.number(),
+    exceedance: z.number(),
+    ratio: maybe,
+    interval: z.array(maybe).length(2).nullable(),
+  })
+  .loose();
+
+export const pairsAnswer = z
+  .object({
+    stream: z.string(),
+    feature: z.string(),
+    kind: z.literal("numeric"),
+    unit: z.string().nullable(),
+    slice: z.string(),
+    state,
+    reading: z.string(),
+    window: range,
+    baseline: z.object({ id: z.string(), slice: z.string() }).nullable(),
+    against: range.nullable(),
+    amended: z.boolean(),
+    generatedAt: time,
+    n: both(z.number()),
+    missing: both(maybe),
+    ks: z
+      .object({
+        distance: z.number(),
+        at: z.number(),
+        direction: z.enum(["above", "below"]),
+        pValue: z.number(),
+      })
+      .nullable(),
+    wasserstein: z.object({ distance: z.number(), scaled: maybe }).nullable(),
+    tails: z.object({ lower: tail.nullable(), upper: tail.nullable() }).nullable(),
+    psi: maybe,
+    jensenShannon: maybe,
+    pairs: z.array(
+      z.object({ rank: z.number(), baseline: maybe, production: maybe, low: maybe, high: maybe }).loose(),
+    ),
+    caution: z.string(),
+  })
+  .loose();
+
+export const timeline = z.object({
+  stream: z.string(),
+  feature: z.string(),
+  slice: z.string(),
+  points: z.array(
+    z.object({
+      horizon: z.string(),
+      window: range,
+      baselineId: z.string(),
+      state,
+      events: z.number(),
+      amended: z.boolean(),
+      n: maybe,
+      missing: maybe,
+      ks: maybe,
+      wassersteinScaled: maybe,
+      tailRatio: z.object({ lower: maybe, upper: maybe }),
+    }),
+  ),
+});
+
+const baseline = z.object({
+  id: z.string(),
+  stream: z.string(),
+  createdAt: time,
+  createdBy: z.string(),
+  note: z.string(),
+  active: z.boolean(),
+});
+export const baselineList = z.object({ stream: z.string(), baselines: z.array(baseline) });
+export const baselineDetail = baseline.extend({ manifest: z.unknown() });
+
+export const logbook = z.object({
+  entries: z.array(
+    z.object({
+      id: z.number(),
+      at: time,
+      stream: z.string().nullable(),
+      kind: z.string(),
+      subject: z.string(),
+      sentence: z.string(),
+      detail: z.unknown(),
+    }),
+  ),
+});
