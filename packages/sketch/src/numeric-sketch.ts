@@ -2,10 +2,11 @@ import { MoorlineError } from "@moorline/errors";
 import type { Atom } from "./atom-table.js";
 import { type CdfKnots, cdfKnotsOf } from "./cdf-knots.js";
 import { cdfAt, cdfBelowAt } from "./cdf-lookup.js";
+import { checkCompression, checkCount, checkValue } from "./check-arguments.js";
 import { stateProblems } from "./check-invariants.js";
 import { decodeState } from "./codec/decode-sketch.js";
 import { encodeState } from "./codec/encode-sketch.js";
-import { DEFAULT_COMPRESSION, LEAST_COMPRESSION, MOST_COMPRESSION } from "./compression.js";
+import { DEFAULT_COMPRESSION, LEAST_COMPRESSION } from "./compression.js";
 import { flushSorted } from "./flush.js";
 import { activeKernel } from "./kernel/active-kernel.js";
 import type { KindCounts } from "./kind-counts.js";
@@ -205,7 +206,12 @@ export class NumericSketch {
     const view = this.#view === null || this.#view === state ? 0 : 16 * this.#view.means.length;
     const knots = this.#knots === null ? 0 : 64 * this.#knots.values.length;
     return (
-      400 + 16 * state.means.length + 8 * this.#buffer.length + 64 * state.atoms.rows.length + view + knots
+      OBJECT_BYTES +
+      16 * state.means.length +
+      8 * this.#buffer.length +
+      64 * state.atoms.rows.length +
+      view +
+      knots
     );
   }
 
@@ -277,22 +283,3 @@ const OBJECT_BYTES = 800;
 
 /** Atoms that are given up in a flush come back as entries. */
 const SLACK_ENTRIES = 64;
-
-function checkCompression(compression: number): number {
-  if (Number.isInteger(compression) && compression >= LEAST_COMPRESSION && compression <= MOST_COMPRESSION) {
-    return compression;
-  }
-  const range = { least: LEAST_COMPRESSION, most: MOST_COMPRESSION };
-  throw new MoorlineError("MOORLINE_INPUT_SKETCH_COMPRESSION", { compression, ...range });
-}
-
-function checkCount(count: number, most: number): void {
-  if (!Number.isSafeInteger(count) || count < 0 || count > most) {
-    throw new MoorlineError("MOORLINE_INPUT_SKETCH_COUNT", { count, most });
-  }
-}
-
-function checkValue(value: number): number {
-  if (Number.isNaN(value)) throw new MoorlineError("MOORLINE_INPUT_SKETCH_VALUE", { value });
-  return value;
-}
