@@ -56,6 +56,30 @@ export class FieldReader {
   read(index: number): unknown {
     return lookUp(this.#objects[this.#parentOf[index]!], this.#keys[index]!, this.#inherited[index]!);
   }
+
+  /**
+   * Reads the first paths as numbers into `values`, with 1 in `missing` where there is none. Returns the index of the first one that is
+   * something else, or -1. One loop over local variables: this is where a decoder spends its time after parsing.
+   */
+  readNumbers(values: Float64Array, missing: Uint8Array): number {
+    const objects = this.#objects;
+    const parentOf = this.#parentOf;
+    const keys = this.#keys;
+    const inherited = this.#inherited;
+    for (let i = 0; i < values.length; i++) {
+      const holder = objects[parentOf[i]!];
+      const plain = typeof holder === "object" && holder !== null && !inherited[i]!;
+      const value = plain ? (holder as Json)[keys[i]!] : lookUp(holder, keys[i]!, inherited[i]!);
+      if (typeof value === "number") {
+        values[i] = value;
+        missing[i] = 0;
+      } else if (value === undefined || value === null) {
+        values[i] = 0;
+        missing[i] = 1;
+      } else return i;
+    }
+    return -1;
+  }
 }
 
 function lookUp(holder: unknown, key: string, inherited: boolean): unknown {

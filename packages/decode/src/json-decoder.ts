@@ -98,20 +98,10 @@ class JsonDecoder implements Decoder {
 
   #takeValues(): DecodeResult | null {
     const { values, missing } = this.#event;
-    for (let f = 0; f < this.#featureCount; f++) {
-      const value = this.#fields.read(f);
-      if (typeof value === "number") {
-        values[f] = value;
-        missing[f] = 0;
-      } else if (value === undefined || value === null) {
-        values[f] = 0;
-        missing[f] = 1;
-      } else {
-        const name = JSON.stringify(this.#stream.features[f]!.name);
-        return refused("wrong-type", `feature ${name} is ${kindOf(value)}, not a number`);
-      }
-    }
-    return null;
+    const wrong = this.#fields.readNumbers(values, missing);
+    if (wrong === -1) return null;
+    const name = JSON.stringify(this.#stream.features[wrong]!.name);
+    return refused("wrong-type", `feature ${name} is ${kindOf(this.#fields.read(wrong))}, not a number`);
   }
 
   #takeSlices(): DecodeResult {
