@@ -1,8 +1,10 @@
 import { MoorlineError } from "@moorline/errors";
+import { NumericSketch } from "@moorline/sketch";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
 import {
   decodeSegmentBody,
   encodeSegmentBody,
+  type Lease,
   openStore,
   type Store,
   type StoreAddress,
@@ -534,6 +536,51 @@ export function storeLaws(engine: string, fresh: () => Promise<FreshStore>): voi
       });
     });
 
+    describe("audit", () => {
+      it("finds nothing while checkpoints and rollups go on being written", async () => {
+        const [collector, evaluator] = [await another(), await another()];
+        await store.ingest.claimPartition(CLAIM);
+        const lease = (await store.evaluations.acquireLease("e", "a", 0, 1_000))!;
+        let writing = true;
+        const collecting = (async () => {
+          for (let at = 0; at < 600; at += 10) {
+            const segments = [segment("all", 10, 0), segment("depot=north", 10, 0)];
+            await collector.ingest.commitCheckpoint(checkpoint(at, 10, { segments }));
+          }
+          writing = false;
+        })();
+        const evaluating = (async () => {
+          while (writing) await rollUp(evaluator, lease);
+          await rollUp(evaluator, lease);
+        })();
+        let audits = 0;
+        while (writing) {
+          expect((await store.audit()).findings).toEqual([]);
+          audits++;
+        }
+        await Promise.all([collecting, evaluating]);
+        expect(audits).toBeGreaterThan(1);
+        const report = await store.audit();
+        expect(report.findings).toEqual([]);
+        expect(report.streams[0]).toMatchObject({ checkpoints: 60, segments: 120, events: 600 });
+        expect(await store.panes.pendingPanes("chill")).toEqual([]);
+      });
+
+      it("finds a rollup that holds something else than its segments, and an hour that does not hold its panes", async () => {
+        const lease = (await store.evaluations.acquireLease("e", "a", 0, 1_000))!;
+        await store.ingest.claimPartition(CLAIM);
+        await store.ingest.commitCheckpoint(checkpoint(0, 10));
+        await rollUp(store, lease);
+        expect((await store.audit()).findings).toEqual([]);
+        const rollups = [rollup("temp", { level: "hour", events: 11 }), rollup("hum")];
+        await store.evaluations.commit(commitOf(lease, { rollups }));
+        expect((await store.audit()).findings.map(({ where, sentence }) => `${where}: ${sentence}`)).toEqual([
+          "pane 1970-01-01T00:00:00.000Z, all, hum: the rollup is wrong: it holds 10 (events), its segments hold 0",
+          "hour 1970-01-01T00:00:00.000Z, all, temp: the rollup holds 11 events, its panes hold 10",
+        ]);
+      });
+    });
+
     it("migrate again, and by several at once, changes nothing", async () => {
       await store.ingest.claimPartition(CLAIM);
       const rival = await another();
@@ -542,6 +589,22 @@ export function storeLaws(engine: string, fresh: () => Promise<FreshStore>): voi
       await rival.ping();
     });
   });
+}
+
+/** Rolls pane 0 up from all its segments, with its hour, as an evaluator does. */
+async function rollUp(target: Store, lease: Lease): Promise<void> {
+  const segments = await target.panes.segments("chill", 0);
+  const slices = [...new Set(segments.map((one) => one.slice))];
+  const panes = slices.map((slice) => {
+    const own = segments.filter((one) => one.slice === slice);
+    const sketches = own.map((one) => NumericSketch.decode(decodeSegmentBody(one.body).get("temp")!));
+    const events = own.reduce((sum, one) => sum + one.events, 0);
+    return rollup("temp", { slice, events, body: NumericSketch.merge(sketches).encode() });
+  });
+  const rollups = [...panes, ...panes.map((row) => ({ ...row, level: "hour" as const }))];
+  await target.evaluations.commit(
+    commitOf(lease, { rollups, settledSegments: segments.map((one) => one.id) }),
+  );
 }
 
 function gap(fromOffset: number, toOffset: number) {
