@@ -581,6 +581,16 @@ export function storeLaws(engine: string, fresh: () => Promise<FreshStore>): voi
       });
     });
 
+    it("says that it is closed once it was closed", async () => {
+      const closed = await openStore(place.address);
+      await closed.close();
+      await expect(closed.ping()).rejects.toMatchObject({ code: "MOORLINE_STATE_STORE_CLOSED" });
+      await expect(closed.ingest.commitCheckpoint(checkpoint(0, 10))).rejects.toMatchObject({
+        code: "MOORLINE_STATE_STORE_CLOSED",
+      });
+      await closed.close();
+    });
+
     it("migrate again, and by several at once, changes nothing", async () => {
       await store.ingest.claimPartition(CLAIM);
       const rival = await another();

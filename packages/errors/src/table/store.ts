@@ -35,6 +35,11 @@ export const STORE_ERRORS = errorRows({
     template: "the store has schema version {found}, this Moorline knows up to {known}",
     hint: "run the Moorline version that wrote the store, or a newer one",
   },
+  MOORLINE_STATE_STORE_CLOSED: {
+    category: "STATE",
+    template: "the store was closed: {reason}",
+    hint: "this is a fault of the caller: nothing may be asked of a store after it was closed",
+  },
   MOORLINE_STATE_UNKNOWN_BASELINE: {
     category: "STATE",
     template: "stream {stream} has no baseline {id}",

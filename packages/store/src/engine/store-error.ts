@@ -10,8 +10,9 @@ const SQLITE_NOTADB = 26;
 /** Node's and PostgreSQL's words for a server that is not there, goes away or has no place left for us. */
 const AWAY = /^(ECONN|EPIPE|ETIMEDOUT|ENOTFOUND|EAI_AGAIN|EHOSTUNREACH|ENETUNREACH|08|57P0|53300)/;
 /** What the driver says of a lost connection without a code. */
-const AWAY_WORDS =
-  /connection (terminated|timeout|error|ended)|timeout exceeded|not queryable|pool after calling end/i;
+const AWAY_WORDS = /connection (terminated|timeout|error|ended)|timeout exceeded|not queryable/i;
+/** What Kysely and the drivers say when they are used after `close()`. */
+const CLOSED_WORDS = /already been destroyed|pool after calling end|database (connection )?is not open/i;
 const BUSY = /^(55P03|40001|40P01)/;
 const FULL = /^(53100|53200|ENOSPC)/;
 
@@ -32,12 +33,14 @@ export function storeError(error: unknown): MoorlineError {
 
 function storeCode(error: unknown): StoreCode {
   const code = textProperty(error, "code");
+  const words = textProperty(error, "message");
   const sqlite = sqliteCode(error);
+  if (CLOSED_WORDS.test(words)) return "MOORLINE_STATE_STORE_CLOSED";
   if (isSqliteBusy(error) || BUSY.test(code)) return "MOORLINE_UPSTREAM_STORE_BUSY";
   if (sqlite === SQLITE_FULL || sqlite === SQLITE_IOERR || FULL.test(code))
     return "MOORLINE_UPSTREAM_STORE_FULL";
   if (sqlite === SQLITE_CORRUPT || sqlite === SQLITE_NOTADB) return "MOORLINE_FORMAT_STORE_FILE";
-  if (sqlite === null && (AWAY.test(code) || AWAY_WORDS.test(textProperty(error, "message")))) {
+  if (sqlite === null && (AWAY.test(code) || AWAY_WORDS.test(words))) {
     return "MOORLINE_UPSTREAM_STORE_AWAY";
   }
   return "MOORLINE_UPSTREAM_STORE_REFUSED";
