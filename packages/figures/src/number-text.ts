@@ -1,5 +1,5 @@
-/** A number with as many digits as a reader can use: four significant ones, no exponent between 0.001 and 1,000,000. */
-export function numberText(value: number): string {
+/** A number with as many digits as a reader can use: four significant ones unless said otherwise, no exponent between 0.001 and 1,000,000. */
+export function numberText(value: number, significant = 4): string {
   if (value === 0) return "0";
   const size = Math.abs(value);
   if (size >= 1e6 || size < 1e-3)
@@ -7,7 +7,7 @@ export function numberText(value: number): string {
       .toExponential(2)
       .replace("e+", "e")
       .replace(/\.?0+e/, "e");
-  const digits = Math.max(0, 3 - Math.floor(Math.log10(size)));
+  const digits = Math.max(0, significant - 1 - Math.floor(Math.log10(size)));
   const text = value.toFixed(Math.min(digits, 6));
   return groupThousands(text.includes(".") ? text.replace(/\.?0+$/, "") : text);
 }

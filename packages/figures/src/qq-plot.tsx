@@ -155,14 +155,16 @@ function Axes({ x, y, data }: Scales & { readonly data: QqPlotData }): VNode {
   );
 }
 
+/** Where the band runs out of the data it is open: drawn to the edge of the frame. */
 function Band({ pairs, x, y }: Scales & { readonly pairs: readonly DrawnPair[] }): VNode | null {
-  const edge = pairs.filter((pair) => pair.low !== null && pair.high !== null);
-  if (edge.length < 2) return null;
-  const inFrame = (at: number) => Math.min(HEIGHT - MARGIN.bottom, Math.max(MARGIN.top, at));
-  const point = (pair: DrawnPair, value: number) =>
-    `${round(x.at(pair.baseline))},${round(inFrame(y.at(value)))}`;
-  const upper = edge.map((pair) => point(pair, pair.high!));
-  const lower = edge.toReversed().map((pair) => point(pair, pair.low!));
+  const known = pairs.filter((pair) => pair.low !== null || pair.high !== null);
+  if (known.length < 2) return null;
+  const [top, bottom] = [MARGIN.top, HEIGHT - MARGIN.bottom];
+  const inFrame = (value: number | null, open: number) =>
+    value === null ? open : Math.min(bottom, Math.max(top, y.at(value)));
+  const point = (pair: DrawnPair, at: number) => `${round(x.at(pair.baseline))},${round(at)}`;
+  const upper = known.map((pair) => point(pair, inFrame(pair.high, top)));
+  const lower = known.toReversed().map((pair) => point(pair, inFrame(pair.low, bottom)));
   return <polygon class="band" points={[...upper, ...lower].join(" ")} />;
 }
 

@@ -144,7 +144,7 @@ function FeatureTable({ stream, rows, slice }: FeatureTableProps): VNode {
             <td class="reading-cell">{row.reading}</td>
             <td class="number">{ratioText(row.tailRatio.lower)}</td>
             <td class="number">{ratioText(row.tailRatio.upper)}</td>
-            <td class="number wide">{row.ks === null ? "–" : numberText(row.ks)}</td>
+            <td class="number wide">{row.ks === null ? "–" : numberText(row.ks, 3)}</td>
             <td class="number wide">{row.n === null ? "–" : countText(row.n)}</td>
             <td class="wide">
               {timeText(row.since)}

@@ -7,7 +7,7 @@ export function timeText(iso: string): string {
 
 /** `3.4 ×`, or a dash where there is no answer. */
 export function ratioText(ratio: number | null): string {
-  return ratio === null ? "–" : `${numberText(ratio)} ×`;
+  return ratio === null ? "–" : `${numberText(ratio, 3)} ×`;
 }
 
 /** A share as a percentage with sensible digits. */
