@@ -1,5 +1,7 @@
 // Collector against bare kafkajs on the same topic of a real broker. Talks on stderr; the last line of stdout is one JSON object.
-// usage: node --import tsx test/load/measure-collector.ts [--events 300000] [--features 30] [--rounds 5] [--codec lz4] [--seed 7]
+// usage: node --import tsx test/load/measure-collector.ts [--events 600000] [--features 30] [--rounds 5]
+//        [--codec lz4] [--seed 7] [--rate 50000]
+// Event times are those of a stream of `rate` events a second: of a slower one a replay opens and writes more panes in the same work.
 
 import { spawn } from "node:child_process";
 import { once } from "node:events";
@@ -20,11 +22,12 @@ const TOPIC = "measure";
 
 const { values } = parseArgs({
   options: {
-    events: { type: "string", default: "300000" },
+    events: { type: "string", default: "600000" },
     features: { type: "string", default: "30" },
     rounds: { type: "string", default: "5" },
     codec: { type: "string", default: "lz4" },
     seed: { type: "string", default: "7" },
+    rate: { type: "string", default: "50000" },
     contender: { type: "string" },
     bootstrap: { type: "string", default: "" },
   },
@@ -91,6 +94,7 @@ function summary(readings: ReadonlyMap<Contender, readonly Reading[]>): object {
     features,
     partitions: PARTITIONS,
     codec: values.codec,
+    eventTimeRate: Number(values.rate),
     seed: Number(values.seed),
     rounds: Number(values.rounds),
     node: process.version,
@@ -119,6 +123,7 @@ async function produce(bootstrap: string): Promise<void> {
     String(features),
     values.codec,
     values.seed,
+    values.rate,
   ];
   const child = spawn("/usr/bin/python3", [script, ...args], { stdio: ["ignore", "inherit", "inherit"] });
   const [code] = await once(child, "close");

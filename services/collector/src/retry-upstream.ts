@@ -1,12 +1,13 @@
 import { setTimeout as sleep } from "node:timers/promises";
 import { isMoorlineError } from "@moorline/errors";
+import { within } from "./within.js";
 
 export interface RetryPlan {
   /** Called after each failure that is tried again. */
   onFailure(error: unknown, attempt: number, waitMs: number): void;
   /** True: give up and throw the last failure. */
   isOver(): boolean;
-  /** Called while waiting; what it throws ends the retries. */
+  /** Called now and then while it lasts; what it throws ends the retries, and an attempt under way is left to itself. */
   meanwhile?: () => Promise<void>;
 }
 
@@ -22,7 +23,7 @@ const STEP_MS = 500;
 export async function retryUpstream<T>(action: () => Promise<T>, plan: RetryPlan): Promise<T> {
   for (let attempt = 1; ; attempt++) {
     try {
-      return await action();
+      return await attended(action(), plan);
     } catch (error) {
       if (!isMoorlineError(error) || !error.retryable || plan.isOver()) throw error;
       const longestMs = Math.min(LONGEST_WAIT_MS, FIRST_WAIT_MS * 2 ** Math.min(attempt - 1, 10));
@@ -32,6 +33,25 @@ export async function retryUpstream<T>(action: () => Promise<T>, plan: RetryPlan
       if (plan.isOver()) throw error;
     }
   }
+}
+
+/** A single attempt can take long too: a database waits for its locks by itself. */
+async function attended<T>(attempt: Promise<T>, plan: RetryPlan): Promise<T> {
+  if (plan.meanwhile === undefined) return attempt;
+  let running = true;
+  const over = attempt.then(
+    () => {
+      running = false;
+    },
+    () => {
+      running = false;
+    },
+  );
+  while (running) {
+    await within(STEP_MS, over);
+    if (running) await plan.meanwhile();
+  }
+  return attempt;
 }
 
 async function waitInSteps(waitMs: number, plan: RetryPlan): Promise<void> {

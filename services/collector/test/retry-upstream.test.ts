@@ -1,3 +1,4 @@
+import { setTimeout as sleep } from "node:timers/promises";
 import { MoorlineError } from "@moorline/errors";
 import { describe, expect, it } from "vitest";
 import { type RetryPlan, retryUpstream } from "../src/retry-upstream.js";
@@ -46,6 +47,17 @@ describe("retryUpstream()", () => {
       plan({ meanwhile: async () => Promise.reject(lost) }),
     );
     await expect(attempt).rejects.toBe(lost);
+  });
+
+  it("retryUpstream() keeps calling its heartbeat while one attempt takes long", async () => {
+    let heartbeats = 0;
+    const meanwhile = async () => {
+      heartbeats++;
+    };
+    const result = await retryUpstream(() => sleep(1300, "slow"), plan({ meanwhile }));
+
+    expect(result).toBe("slow");
+    expect(heartbeats).toBe(2);
   });
 
   it("retryUpstream() gives up with the last failure once it is over", async () => {
