@@ -29,6 +29,9 @@ export interface ChaosResult {
   readonly kills: number;
   readonly brokerRestarts: number;
   readonly panes: number;
+  /** Checkpoints in the store, and how often a partition changed its owner: both must be many for the run to mean anything. */
+  readonly checkpoints: number;
+  readonly claims: number;
   /** Every pane, slice and feature whose counts differ from what was produced. */
   readonly differences: readonly string[];
   readonly audit: { readonly exitCode: number | null; readonly stdout: string };
@@ -86,6 +89,7 @@ export async function chaosRun(options: ChaosOptions): Promise<ChaosResult> {
       inTopic,
       counted,
       ...chaos,
+      ...(await progressOf(storePath)),
       panes,
       differences,
       audit,
@@ -101,7 +105,7 @@ export async function chaosRun(options: ChaosOptions): Promise<ChaosResult> {
 
 function configText(bootstrap: string, storePath: string): string {
   return `store: sqlite:${storePath}
-collector: { port: 0 }
+collector: { port: 0, checkpoint: 700ms }
 evaluator: { port: 0 }
 streams:
   - name: ${STREAM}
@@ -219,7 +223,7 @@ async function disturb(
     Math.floor(((k + 1) * options.kills) / (options.brokerRestarts + 1)),
   );
   while (kills < options.kills) {
-    await sleep(1_500 + random() * 4_000);
+    await sleep(2_000 + random() * 5_000);
     if (!collector.running) throw new Error(`the collector ended by itself: ${collector.lastOutput}`);
     await collector.end("SIGKILL");
     kills += 1;
@@ -239,6 +243,18 @@ async function disturb(
   if (exitCode !== 0)
     throw new Error(`the collector did not stop cleanly (${exitCode}): ${collector.lastOutput}`);
   return { kills, brokerRestarts };
+}
+
+async function progressOf(storePath: string): Promise<{ checkpoints: number; claims: number }> {
+  const store = await openStore({ kind: "sqlite", path: storePath });
+  try {
+    const report = await store.audit(STREAM);
+    const rows = await store.ingest.partitions(STREAM);
+    const claims = rows.reduce((sum, row) => sum + row.epoch, 0);
+    return { checkpoints: report.streams[0]?.checkpoints ?? 0, claims };
+  } finally {
+    await store.close();
+  }
 }
 
 async function sumOfOffsets(storePath: string): Promise<number> {

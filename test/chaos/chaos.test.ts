@@ -37,6 +37,11 @@ describe(`invariant 1 and 2 under kills and restarts (seed ${SEED})`, () => {
     expect([result.kills, result.brokerRestarts]).toEqual([5, 1]);
   });
 
+  it("checkpoints and owners were many, so that kills came between them", () => {
+    expect(result.checkpoints).toBeGreaterThan(4 * 6);
+    expect(result.claims).toBeGreaterThan(2 * 6);
+  });
+
   it("audit is clean", () => {
     expect(JSON.parse(result.audit.stdout)).toMatchObject({ clean: true, findings: [] });
     expect(result.audit.exitCode).toBe(0);
