@@ -2,7 +2,7 @@ import type { Kysely } from "kysely";
 import type { Engine } from "./engine/engine.js";
 import { inOrder } from "./in-order.js";
 import type { RollupTable, Tables } from "./schema.js";
-import type { PaneStore, PendingPane, RollupLevel, RollupRow } from "./store.js";
+import type { PaneStore, RollupLevel, RollupRow } from "./store.js";
 
 /** Panes: segments that wait for their rollup, and rollups. */
 export function paneStore({ db }: Engine): PaneStore {
@@ -10,17 +10,30 @@ export function paneStore({ db }: Engine): PaneStore {
     pendingPanes: async (stream) => {
       const rows = await db
         .selectFrom("segment_pending")
-        .select((eb) => ["pane_start_ms", eb.fn.countAll<number>().as("segments")])
+        .select((eb) => [
+          "pane_start_ms",
+          eb.fn.countAll<number>().as("segments"),
+          eb
+            .exists(
+              eb
+                .selectFrom("rollup")
+                .select("start_ms")
+                .where("rollup.stream", "=", stream)
+                .where("rollup.level", "=", "pane")
+                .whereRef("rollup.start_ms", "=", "segment_pending.pane_start_ms"),
+            )
+            .as("rolled_up"),
+        ])
         .where("stream", "=", stream)
         .groupBy("pane_start_ms")
         .orderBy("pane_start_ms")
         .execute();
-      const panes: PendingPane[] = [];
-      for (const row of rows) {
-        const rolledUp = await isRolledUp(db, stream, row.pane_start_ms);
-        panes.push({ paneStartMs: row.pane_start_ms, segments: Number(row.segments), rolledUp });
-      }
-      return panes;
+      return rows.map((row) => ({
+        paneStartMs: row.pane_start_ms,
+        segments: Number(row.segments),
+        // True on PostgreSQL, 1 on SQLite.
+        rolledUp: Boolean(row.rolled_up),
+      }));
     },
 
     segmentSlices: async (stream, paneStartMs) => {
@@ -92,16 +105,6 @@ export function paneStore({ db }: Engine): PaneStore {
       return firstPaneMs === null || lastPaneMs === null ? null : { firstPaneMs, lastPaneMs };
     },
   };
-}
-
-/** Reads one row of the index, however many rollups the pane has. */
-async function isRolledUp(db: Kysely<Tables>, stream: string, paneStartMs: number): Promise<boolean> {
-  const rollups = db
-    .selectFrom("rollup")
-    .select("start_ms")
-    .where("stream", "=", stream)
-    .where("level", "=", "pane");
-  return (await rollups.where("start_ms", "=", paneStartMs).limit(1).execute()).length > 0;
 }
 
 /** The first or last pane with a rollup, from one end of the index: a minimum and maximum together would read all of it. */

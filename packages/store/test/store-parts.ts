@@ -1,6 +1,7 @@
 import { NumericSketch } from "@moorline/sketch";
 import {
   type Checkpoint,
+  decodeSegmentBody,
   type EvaluationCommit,
   type EvaluationRow,
   encodeSegmentBody,
@@ -8,6 +9,7 @@ import {
   type Lease,
   type RollupRow,
   type SegmentWrite,
+  type Store,
 } from "../src/index.js";
 
 export const PANE_MS = 60_000;
@@ -125,4 +127,32 @@ export function commitOf(lease: Lease, changes: Partial<EvaluationCommit> = {}):
     logbook: [],
     ...changes,
   };
+}
+
+/** An entry of the logbook. */
+export function entry(subject: string) {
+  return {
+    atMs: 7,
+    stream: "chill",
+    kind: "state-change",
+    subject,
+    sentence: "it moved",
+    detail: { distance: 0.5 },
+  } as const;
+}
+
+/** Rolls pane 0 up from all its segments, with its hour, as an evaluator does. */
+export async function rollUpPane(target: Store, lease: Lease): Promise<void> {
+  const segments = await target.panes.segments("chill", 0);
+  const slices = [...new Set(segments.map((one) => one.slice))];
+  const panes = slices.map((slice) => {
+    const own = segments.filter((one) => one.slice === slice);
+    const sketches = own.map((one) => NumericSketch.decode(decodeSegmentBody(one.body).get("temp")!));
+    const events = own.reduce((sum, one) => sum + one.events, 0);
+    return rollup("temp", { slice, events, body: NumericSketch.merge(sketches).encode() });
+  });
+  const rollups = [...panes, ...panes.map((row) => ({ ...row, level: "hour" as const }))];
+  await target.evaluations.commit(
+    commitOf(lease, { rollups, settledSegments: segments.map((one) => one.id) }),
+  );
 }
