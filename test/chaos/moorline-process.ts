@@ -9,8 +9,12 @@ export class MoorlineProcess {
   readonly #child: ChildProcess;
   #tail = "";
 
-  constructor(args: readonly string[], cwd: string) {
-    this.#child = spawn(process.execPath, [MAIN, ...args], { cwd, stdio: ["ignore", "pipe", "pipe"] });
+  constructor(args: readonly string[], cwd: string, env: Readonly<Record<string, string>> = {}) {
+    this.#child = spawn(process.execPath, [MAIN, ...args], {
+      cwd,
+      env: { ...process.env, ...env },
+      stdio: ["ignore", "pipe", "pipe"],
+    });
     for (const stream of [this.#child.stdout, this.#child.stderr]) {
       stream?.on("data", (chunk: Buffer) => {
         this.#tail = (this.#tail + chunk.toString()).slice(-4_000);

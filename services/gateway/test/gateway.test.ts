@@ -275,7 +275,7 @@ describe("the pages", () => {
   it("link to assets that there are", async () => {
     const html = await (await get("/")).text();
     const assets = [...html.matchAll(/(?:href|src)="(\/assets\/[^"]+)"/g)].map((match) => match[1]!);
-    expect(assets).toHaveLength(2);
+    expect(assets).toHaveLength(3);
     for (const asset of assets) expect((await get(asset)).status).toBe(200);
   });
 

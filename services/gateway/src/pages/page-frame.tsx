@@ -6,7 +6,7 @@ export interface PageProps {
   readonly title: string;
   readonly notice: string | null;
   /** Style and script names carry a hash of their content, so they may be kept for ever. */
-  readonly assets: { readonly style: string; readonly script: string };
+  readonly assets: { readonly style: string; readonly script: string; readonly icon: string };
   readonly children: ComponentChildren;
 }
 
@@ -19,6 +19,7 @@ function Page({ title, notice, assets, children }: PageProps): VNode {
         <meta name="viewport" content="width=device-width, initial-scale=1" />
         <title>{`${title} – Moorline`}</title>
         <link rel="stylesheet" href={assets.style} />
+        <link rel="icon" href={assets.icon} type="image/svg+xml" />
         <script src={assets.script} defer />
       </head>
       <body>

@@ -10,12 +10,13 @@ import { pairsQuery } from "../api/query-schemas.js";
 import { featureOf, type GatewayContext, streamOf } from "../gateway-context.js";
 import { FeatureContent } from "./feature-page.js";
 import { pageHtml } from "./page-frame.js";
-import { PAGE_SCRIPT, PAGE_STYLE } from "./page-style.js";
+import { PAGE_ICON, PAGE_SCRIPT, PAGE_STYLE } from "./page-style.js";
 import { StreamSection } from "./stream-page.js";
 
 const ASSETS = {
   style: { path: `/assets/${hashed(PAGE_STYLE)}.css`, type: "text/css", text: PAGE_STYLE },
   script: { path: `/assets/${hashed(PAGE_SCRIPT)}.js`, type: "text/javascript", text: PAGE_SCRIPT },
+  icon: { path: `/assets/${hashed(PAGE_ICON)}.svg`, type: "image/svg+xml", text: PAGE_ICON },
 } as const;
 
 /** The pages: every stream, one stream, one feature. Errors on them are pages too. */
@@ -69,7 +70,7 @@ function sendPage(
   title: string,
   content: VNode,
 ): void {
-  const assets = { style: ASSETS.style.path, script: ASSETS.script.path };
+  const assets = { style: ASSETS.style.path, script: ASSETS.script.path, icon: ASSETS.icon.path };
   const html = pageHtml({ title, notice: context.notice, assets, children: content });
   response.status(status).set("Cache-Control", "no-cache").type("text/html").send(html);
 }

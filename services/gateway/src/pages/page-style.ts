@@ -53,3 +53,6 @@ async function refresh() {
 }
 setInterval(refresh, 5000);
 `;
+
+/** The tab's mark: the line of equality and a mark that left it. */
+export const PAGE_ICON = `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 32 32"><rect width="32" height="32" rx="6" fill="#0b5c7a"/><path d="M5 27 L27 5" stroke="#fdfcf9" stroke-width="2.5"/><path d="M21 13 L27 23 L15 23 Z" transform="translate(-10 -16)" fill="#f0b27a"/></svg>`;
