@@ -21,6 +21,8 @@ export interface DecodedEvent {
   readonly values: Float64Array;
   /** 1 where the feature is absent or null, else 0. */
   readonly missing: Uint8Array;
+  /** Is there a 1 in `missing`? */
+  anyMissing: boolean;
   /** One value a configured slice key, in config order; `(none)` where it is absent. Bounded in length. */
   readonly slices: string[];
 }

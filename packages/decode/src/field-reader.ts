@@ -1,6 +1,10 @@
 /** Stands for a path that leads through something that is no object, for example `cargo.temp` where `cargo` is 5. */
 export const BLOCKED = Symbol("blocked path");
 
+/** What readNumbers() answers when everything is a number, or a number or absent. */
+export const NONE_ABSENT = -1;
+export const SOME_ABSENT = -2;
+
 type Json = Record<string, unknown>;
 
 interface Parent {
@@ -59,13 +63,14 @@ export class FieldReader {
 
   /**
    * Reads the first paths as numbers into `values`, with 1 in `missing` where there is none. Returns the index of the first one that is
-   * something else, or -1. One loop over local variables: this is where a decoder spends its time after parsing.
+   * something else, else NONE_ABSENT or SOME_ABSENT. One loop over local variables: this is where a decoder spends its time after parsing.
    */
   readNumbers(values: Float64Array, missing: Uint8Array): number {
     const objects = this.#objects;
     const parentOf = this.#parentOf;
     const keys = this.#keys;
     const inherited = this.#inherited;
+    let absent = NONE_ABSENT;
     for (let i = 0; i < values.length; i++) {
       const holder = objects[parentOf[i]!];
       const plain = typeof holder === "object" && holder !== null && !inherited[i]!;
@@ -76,9 +81,10 @@ export class FieldReader {
       } else if (value === undefined || value === null) {
         values[i] = 0;
         missing[i] = 1;
+        absent = SOME_ABSENT;
       } else return i;
     }
-    return -1;
+    return absent;
   }
 }
 

@@ -1,7 +1,7 @@
 import type { StreamConfig } from "@moorline/config";
 import type { DeadLetterReason, DecodedEvent, DecodeResult, Decoder } from "./decoder.js";
 import { EARLIEST_EVENT_MS, eventTimeOf } from "./event-time.js";
-import { BLOCKED, FieldReader } from "./field-reader.js";
+import { BLOCKED, FieldReader, SOME_ABSENT } from "./field-reader.js";
 import { nestsDeeperThan } from "./nesting.js";
 import { payloadText } from "./payload-text.js";
 import { sliceText } from "./slice-text.js";
@@ -50,6 +50,7 @@ class JsonDecoder implements Decoder {
       eventMs: 0,
       values: new Float64Array(this.#featureCount),
       missing: new Uint8Array(this.#featureCount),
+      anyMissing: false,
       slices: stream.slices.map(() => ""),
     };
     this.#ok = { ok: true, event: this.#event };
@@ -99,7 +100,10 @@ class JsonDecoder implements Decoder {
   #takeValues(): DecodeResult | null {
     const { values, missing } = this.#event;
     const wrong = this.#fields.readNumbers(values, missing);
-    if (wrong === -1) return null;
+    if (wrong < 0) {
+      this.#event.anyMissing = wrong === SOME_ABSENT;
+      return null;
+    }
     const name = JSON.stringify(this.#stream.features[wrong]!.name);
     return refused("wrong-type", `feature ${name} is ${kindOf(this.#fields.read(wrong))}, not a number`);
   }

@@ -49,6 +49,7 @@ describe("createJsonDecoder(): what cannot be counted", () => {
 
     if (!result.ok) throw new Error(result.detail);
     expect([...result.event.missing]).toEqual([1, 1]);
+    expect(result.event.anyMissing).toBe(true);
     expect(result.event.slices).toEqual(["south"]);
   });
 
@@ -81,6 +82,7 @@ describe("createJsonDecoder(): what counts", () => {
     if (!result.ok) throw new Error(`${result.reason}: ${result.detail}`);
     const { event } = result;
     expect(values.map((_, f) => (event.missing[f] === 1 ? null : event.values[f]))).toEqual(values);
+    expect(event.anyMissing).toBe(values.includes(null));
     expect(event.slices).toEqual([depot]);
   });
 

@@ -17,6 +17,8 @@ export interface IngestContext {
   readonly sketchOptions: SketchOptionsSource;
   readonly decoder: Decoder;
   nowMs(): number;
+  /** Once for some events: what the decoder holds their times against. */
+  lookAtClock(): void;
   isStopping(): boolean;
   /** True when all partitions hold more than the limit and one with this many bytes has more than its share. */
   overBudget(heldBytes: number): boolean;

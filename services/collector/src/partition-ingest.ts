@@ -6,7 +6,7 @@ import type { IngestContext } from "./ingest-context.js";
 import { retryUpstream } from "./retry-upstream.js";
 import { SegmentAccumulator } from "./segment-accumulator.js";
 import { SerialQueue } from "./serial-queue.js";
-import type { BatchControl, SourceBatch, SourceRecord, Verdict } from "./source.js";
+import type { BatchControl, SourceBatch, SourceRecords, Verdict } from "./source.js";
 
 /** Records between two looks at the clock, heartbeats and limits. */
 const CHUNK_RECORDS = 1000;
@@ -128,7 +128,7 @@ export class PartitionIngest {
       const end = Math.min(records.length, at + CHUNK_RECORDS);
       this.#count(records, at, end);
       // Where the next record begins: a hole before it holds nothing to be had.
-      this.#position = end < records.length ? records[end]!.offset : batch.toOffset;
+      this.#position = end < records.length ? records.offsetAt(end) : batch.toOffset;
       if (this.#due()) {
         const verdict = await this.#checkpoint(control);
         if (verdict.action !== "read-on") return verdict;
@@ -163,14 +163,16 @@ export class PartitionIngest {
     this.#context.noteGap(this.key, gap.fromOffset, gap.toOffset);
   }
 
-  #count(records: readonly SourceRecord[], from: number, to: number): void {
+  #count(records: SourceRecords, from: number, to: number): void {
     const lateAfterMs = this.#context.stream.paneMs + this.#context.stream.latenessMs;
-    const { paneMs } = this.#context.stream;
+    const { paneMs, payload } = this.#context.stream;
+    const recordTime = payload.eventTime === null;
+    this.#context.lookAtClock();
     for (let i = from; i < to; i++) {
-      const record = records[i]!;
-      const result = this.#decoder.decode(record.value, record.timestampMs);
+      const timestampMs = recordTime ? records.timestampMsAt(i) : null;
+      const result = this.#decoder.decode(records.valueAt(i), timestampMs);
       if (!result.ok) {
-        this.#refuse(record, result.reason, result.detail);
+        this.#refuse(records.offsetAt(i), records.valueAt(i), result.reason, result.detail);
         continue;
       }
       const { eventMs } = result.event;
@@ -184,9 +186,8 @@ export class PartitionIngest {
     }
   }
 
-  #refuse(record: SourceRecord, reason: DeadLetter["reason"], detail: string): void {
+  #refuse(offset: number, value: Uint8Array | null, reason: DeadLetter["reason"], detail: string): void {
     const { stream, topic, partition } = this.key;
-    const { value, offset } = record;
     // A copy: a view would keep the whole fetched buffer alive until the checkpoint.
     const payload = value === null ? null : Uint8Array.prototype.slice.call(value, 0, MOST_KEPT_BYTES);
     const payloadBytes = value?.length ?? 0;
@@ -285,12 +286,12 @@ function emptyDelta(): Delta {
 }
 
 /** Index of the first record at or after an offset. */
-function firstAtOrAfter(records: readonly SourceRecord[], offset: number): number {
+function firstAtOrAfter(records: SourceRecords, offset: number): number {
   let low = 0;
   let high = records.length;
   while (low < high) {
     const middle = (low + high) >>> 1;
-    if (records[middle]!.offset < offset) low = middle + 1;
+    if (records.offsetAt(middle) < offset) low = middle + 1;
     else high = middle;
   }
   return low;

@@ -45,8 +45,7 @@ export class SegmentAccumulator {
       pane = this.#panes.get(startMs) ?? this.#openPane(startMs);
       this.#last = pane;
     }
-    const { values, missing } = event;
-    const anyMissing = missing.includes(1);
+    const { values, missing, anyMissing } = event;
     let grown = pane.all.add(values, missing, anyMissing);
 
     for (let key = 0; key < this.#sliceKeys; key++) {

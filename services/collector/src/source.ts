@@ -1,11 +1,13 @@
-/** One record of a partition. `value` may be a view of a larger buffer: copy what is kept. */
-export interface SourceRecord {
-  readonly offset: number;
-  readonly value: Uint8Array | null;
-  readonly timestampMs: number | null;
+/** Records of a batch, ascending by offset, looked at one by one: most offsets and times are never asked for. */
+export interface SourceRecords {
+  readonly length: number;
+  offsetAt(index: number): number;
+  /** May be a view of a larger buffer: copy what is kept. */
+  valueAt(index: number): Uint8Array | null;
+  timestampMsAt(index: number): number | null;
 }
 
-/** Records of one partition, ascending by offset. */
+/** What a source read of one partition at once. */
 export interface SourceBatch {
   readonly topic: string;
   readonly partition: number;
@@ -15,7 +17,7 @@ export interface SourceBatch {
   readonly toOffset: number;
   /** The offset that the next record of the partition will get: Kafka's high watermark, a file's length. */
   readonly endOffset: number;
-  readonly records: readonly SourceRecord[];
+  readonly records: SourceRecords;
 }
 
 /** A partition that a source may now read. */

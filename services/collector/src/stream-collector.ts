@@ -47,6 +47,7 @@ export class StreamCollector implements SourceSink, IngestContext {
   #timer: NodeJS.Timeout | null = null;
   #stopDeadlineMs = Infinity;
   #stopping = false;
+  #clockMs = 0;
   /** Counts releases: a claim that was asked for before one is not taken up after it. */
   #generation = 0;
   readonly ended: Promise<void>;
@@ -58,7 +59,7 @@ export class StreamCollector implements SourceSink, IngestContext {
     this.limits = parts.limits;
     this.nowMs = parts.nowMs;
     this.sketchOptions = new BaselineWatch(parts.store, parts.stream.name);
-    this.decoder = createJsonDecoder(parts.stream, { nowMs: parts.nowMs });
+    this.decoder = createJsonDecoder(parts.stream, { nowMs: () => this.#clockMs });
     let fail: (error: unknown) => void = () => {};
     const failed = new Promise<never>((_, reject) => {
       fail = reject;
@@ -175,6 +176,10 @@ export class StreamCollector implements SourceSink, IngestContext {
   }
 
   // ---- IngestContext ----------------------------------------------------------------------------------------------
+
+  lookAtClock(): void {
+    this.#clockMs = this.nowMs();
+  }
 
   isStopping(): boolean {
     return this.#stopping;

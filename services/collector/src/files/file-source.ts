@@ -6,6 +6,7 @@ import type { CollectorReports } from "../collector-reports.js";
 import type { BatchControl, Source, SourceSink, Verdict } from "../source.js";
 import { fileIdentity, hasIdentity } from "./file-identity.js";
 import { LineReader } from "./line-reader.js";
+import { LineRecords } from "./line-records.js";
 
 /** How often the end of a growing file is looked at. */
 const POLL_MS = 200;
@@ -124,8 +125,10 @@ export class FileSource implements Source {
         if (await wasReplaced(path, reader)) return "reopen";
         continue;
       }
-      const batch = { topic, partition: PARTITION, fromOffset: position, ...lines };
-      const next = await sink.take({ ...batch, endOffset: lines.fileBytes }, CONTROL);
+      const records = new LineRecords(lines.records);
+      const { toOffset, fileBytes: endOffset } = lines;
+      const batch = { topic, partition: PARTITION, fromOffset: position, toOffset, endOffset, records };
+      const next = await sink.take(batch, CONTROL);
       if (next.action === "read-on") position = lines.toOffset;
       else if (next.action === "seek") position = next.offset;
       else return outcomeOf(next);

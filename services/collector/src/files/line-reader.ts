@@ -1,8 +1,7 @@
 import { type FileHandle, open } from "node:fs/promises";
 import { DEFAULT_MAX_BYTES } from "@moorline/decode";
 import { MoorlineError } from "@moorline/errors";
-import type { SourceRecord } from "../source.js";
-import { lineOf, splitLines } from "./split-lines.js";
+import { type Line, lineOf, splitLines } from "./split-lines.js";
 
 const CHUNK_BYTES = 256 * 1024;
 /** What is kept of a line: enough for the decoder to see that it is too large. */
@@ -10,7 +9,7 @@ const MOST_LINE_BYTES = DEFAULT_MAX_BYTES + 1;
 const NEWLINE = 0x0a;
 
 export interface LinesRead {
-  readonly records: readonly SourceRecord[];
+  readonly records: readonly Line[];
   /** Byte position after the last whole line; the position asked for when there is none yet. */
   readonly toOffset: number;
   readonly fileBytes: number;
@@ -56,7 +55,7 @@ export class LineReader {
     if (chunk.length < CHUNK_BYTES) {
       if (!complete || chunk.length === 0) return { records: [], toOffset: position, fileBytes };
       const value = lineOf(chunk, 0, chunk.length);
-      return { records: [{ offset: position, value, timestampMs: null }], toOffset: fileBytes, fileBytes };
+      return { records: [{ offset: position, value }], toOffset: fileBytes, fileBytes };
     }
     return this.#readLongLine(position, chunk, complete, fileBytes);
   }
@@ -88,7 +87,7 @@ export class LineReader {
       const line = Buffer.concat(parts);
       const toOffset = end === -1 ? at : at + 1;
       const value = lineOf(line, 0, line.length);
-      return { records: [{ offset: position, value, timestampMs: null }], toOffset, fileBytes };
+      return { records: [{ offset: position, value }], toOffset, fileBytes };
     }
   }
 

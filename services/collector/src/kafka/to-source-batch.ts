@@ -1,5 +1,5 @@
 import type { Batch, KafkaMessage } from "kafkajs";
-import type { SourceBatch, SourceRecord } from "../source.js";
+import type { SourceBatch, SourceRecords } from "../source.js";
 import type { ReadReach } from "./read-reach.js";
 
 /** What kafkajs delivered, with numbers for its strings. Offsets stay far below 2^53. */
@@ -13,11 +13,31 @@ export function toSourceBatch(batch: Batch, reach: ReadReach): SourceBatch {
     fromOffset: reach.beginOf(topic, partition, fetchedOffset),
     toOffset: Number(batch.lastOffset()) + 1,
     endOffset: Number(batch.highWatermark),
-    records: batch.messages.map(toRecord),
+    records: new KafkaRecords(batch.messages),
   };
 }
 
-function toRecord({ offset, value, timestamp }: KafkaMessage): SourceRecord {
-  const timestampMs = Number(timestamp);
-  return { offset: Number(offset), value, timestampMs: timestampMs >= 0 ? timestampMs : null };
+class KafkaRecords implements SourceRecords {
+  readonly #messages: readonly KafkaMessage[];
+
+  constructor(messages: readonly KafkaMessage[]) {
+    this.#messages = messages;
+  }
+
+  get length(): number {
+    return this.#messages.length;
+  }
+
+  offsetAt(index: number): number {
+    return Number(this.#messages[index]!.offset);
+  }
+
+  valueAt(index: number): Uint8Array | null {
+    return this.#messages[index]!.value;
+  }
+
+  timestampMsAt(index: number): number | null {
+    const timestampMs = Number(this.#messages[index]!.timestamp);
+    return timestampMs >= 0 ? timestampMs : null;
+  }
 }
