@@ -1,3 +1,4 @@
+import { readFileSync } from "node:fs";
 import { Writable } from "node:stream";
 import { createTelemetry } from "@moorline/telemetry";
 import { Validator } from "@seriousme/openapi-schema-validator";
@@ -283,5 +284,15 @@ describe("the pages", () => {
     const response = await get(`/streams/none`);
     expect(response.status).toBe(404);
     expect(await response.text()).toContain("there is no stream none");
+  });
+});
+
+describe("README.md", () => {
+  it("names every route, and no other", () => {
+    const readme = readFileSync(new URL("../README.md", import.meta.url), "utf8");
+    const documented = [...readme.matchAll(/^\| `(GET|PUT) (\/v1\S+)`/gm)].map(
+      (match) => `${match[1]!.toLowerCase()} ${match[2]}`,
+    );
+    expect(documented.toSorted()).toEqual(ROUTES.map((route) => `${route.method} ${route.path}`).toSorted());
   });
 });
