@@ -9,7 +9,7 @@ log(`seed ${seed}`);
 
 const result = await chaosRun({
   events: 500_000,
-  eventsPerSecond: 5_000,
+  eventsPerSecond: 3_500,
   kills: 20,
   brokerRestarts: 2,
   seed,
