@@ -4,7 +4,8 @@ import type { Kafka } from "kafkajs";
 import type { CollectorReports } from "../collector-reports.js";
 import type { Source, SourceSink } from "../source.js";
 import { ConsumerSession } from "./consumer-session.js";
-import { isKafkaError, kafkaAway } from "./kafka-client.js";
+import { kafkaAway } from "./kafka-client.js";
+import { onUnhandledKafkaFailure } from "./unhandled-failures.js";
 
 const FIRST_WAIT_MS = 500;
 const LONGEST_WAIT_MS = 10_000;
@@ -21,11 +22,11 @@ export class KafkaSource implements Source {
   readonly #config: KafkaSourceConfig;
   readonly #reports: CollectorReports;
   readonly #fail: { reject(error: unknown): void };
-  readonly #onUnhandled = (reason: unknown) => this.#unhandled(reason);
   #session: ConsumerSession | null = null;
   #supervisor: Promise<void> = Promise.resolve();
   #stopping = false;
   #failures = 0;
+  #leaveUnhandled: () => void = () => {};
   readonly ended: Promise<void>;
 
   constructor(kafka: Kafka, config: KafkaSourceConfig, reports: CollectorReports) {
@@ -41,7 +42,7 @@ export class KafkaSource implements Source {
   }
 
   async start(sink: SourceSink): Promise<void> {
-    process.on("unhandledRejection", this.#onUnhandled);
+    this.#leaveUnhandled = onUnhandledKafkaFailure((error) => this.#session?.fail(error));
     this.#supervisor = this.#supervise(sink);
   }
 
@@ -54,7 +55,7 @@ export class KafkaSource implements Source {
     this.#stopping = true;
     this.#session?.fail(null);
     await this.#supervisor;
-    process.off("unhandledRejection", this.#onUnhandled);
+    this.#leaveUnhandled();
   }
 
   committed(topic: string, partition: number, nextOffset: number): void {
@@ -89,15 +90,5 @@ export class KafkaSource implements Source {
     this.#failures++;
     this.#reports.away("source", kafkaAway(this.#config, error), this.#failures, waitMs);
     for (let left = waitMs; left > 0 && !this.#stopping; left -= STEP_MS) await sleep(STEP_MS);
-  }
-
-  /** kafkajs loses some failures of a dying consumer; those end the session. Anything else is a bug and ends the process. */
-  #unhandled(reason: unknown): void {
-    if (isKafkaError(reason)) this.#session?.fail(reason);
-    else {
-      setImmediate(() => {
-        throw reason;
-      });
-    }
   }
 }
