@@ -10,8 +10,11 @@ const ROWS_GROWTH = 4;
 /** Bounds the rows held by one pane and slice of a stream with very many features. */
 const MOST_ROW_BYTES = 1024 * 1024;
 
-/** One column, shared: it is filled and handed over before anything else runs. */
-const column = new Float64Array(MOST_ROWS);
+/** Features transposed at once: their values of one row lie in one or two cache lines, and the rows outgrow the cache. */
+const LANES = 8;
+/** Shared: columns are filled and handed over before anything else runs. */
+const columns = Array.from({ length: LANES }, () => new Float64Array(MOST_ROWS));
+const column = columns[0]!;
 
 /**
  * All features of one pane and slice. Events are kept as rows (one copy of the event's values), turned into columns when there are
@@ -69,9 +72,10 @@ export class FeatureColumns {
   flush(): number {
     if (this.#rows === 0) return 0;
     const before = this.heldBytes;
-    for (let f = 0; f < this.#sketches.length; f++) this.#flushFeature(f);
-
-    if (this.#anyMissing) this.#missing?.fill(0);
+    if (this.#anyMissing) {
+      for (let f = 0; f < this.#sketches.length; f++) this.#flushWithGaps(f, this.#missing!);
+      this.#missing!.fill(0);
+    } else for (let f = 0; f < this.#sketches.length; f += LANES) this.#flushLanes(f);
     this.#anyMissing = false;
     this.#rows = 0;
     this.#sketchBytes = this.#measureSketches();
@@ -87,23 +91,32 @@ export class FeatureColumns {
     return { paneStartMs, slice: this.slice, events: this.events, body: encodeSegmentBody(encoded) };
   }
 
-  #flushFeature(f: number): void {
+  #flushLanes(first: number): void {
+    const lanes = Math.min(LANES, this.#sketches.length - first);
+    if (lanes === LANES) transposeEight(this.#values, first, this.#features.length, this.#rows);
+    for (let lane = 0; lane < lanes; lane++) {
+      const into = columns[lane]!;
+      if (lanes < LANES) this.#transpose(first + lane, into);
+      this.#sketches[first + lane]!.addColumn(into, this.#rows);
+    }
+  }
+
+  #transpose(f: number, into: Float64Array): void {
+    const width = this.#features.length;
+    const values = this.#values;
+    for (let row = 0, at = f; row < this.#rows; row++, at += width) into[row] = values[at]!;
+  }
+
+  #flushWithGaps(f: number, missing: Uint8Array): void {
     const width = this.#features.length;
     const values = this.#values;
     const rows = this.#rows;
-    const sketch = this.#sketches[f]!;
-    const missing = this.#anyMissing ? this.#missing : null;
-    if (missing === null) {
-      for (let row = 0, at = f; row < rows; row++, at += width) column[row] = values[at]!;
-      sketch.addColumn(column, rows);
-      return;
-    }
     let length = 0;
     for (let row = 0, at = f; row < rows; row++, at += width) {
       if (missing[at] === 0) column[length++] = values[at]!;
     }
-    if (length > 0) sketch.addColumn(column, length);
-    if (length < rows) sketch.addMissing(rows - length);
+    if (length > 0) this.#sketches[f]!.addColumn(column, length);
+    if (length < rows) this.#sketches[f]!.addMissing(rows - length);
   }
 
   #makeRoom(): number {
@@ -125,5 +138,29 @@ export class FeatureColumns {
     let bytes = 0;
     for (const sketch of this.#sketches) bytes += sketch.sizeInBytes();
     return bytes;
+  }
+}
+
+/** Eight neighbouring features of every row into the shared columns. */
+function transposeEight(values: Float64Array, first: number, width: number, rows: number): void {
+  const [c0, c1, c2, c3, c4, c5, c6, c7] = columns as [
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+  ];
+  for (let row = 0, at = first; row < rows; row++, at += width) {
+    c0[row] = values[at]!;
+    c1[row] = values[at + 1]!;
+    c2[row] = values[at + 2]!;
+    c3[row] = values[at + 3]!;
+    c4[row] = values[at + 4]!;
+    c5[row] = values[at + 5]!;
+    c6[row] = values[at + 6]!;
+    c7[row] = values[at + 7]!;
   }
 }

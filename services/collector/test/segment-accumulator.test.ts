@@ -65,6 +65,29 @@ describe("SegmentAccumulator", () => {
     expect(sketchOf(all.body, "door_openings").counts).toMatchObject({ finite: 10_000, missing: 0 });
   });
 
+  it.each([1, 7, 8, 9, 19])("add() puts each value under its own feature (%i features)", (count) => {
+    const features = Array.from({ length: count }, (_, f) => ({
+      name: `f${f}`,
+      kind: "numeric" as const,
+      path: [`f${f}`],
+      unit: null,
+    }));
+    const wide = parcelStream({ features, slices: [] });
+    const wideDecoder = createJsonDecoder(wide);
+    const held = new SegmentAccumulator(wide, new SliceRegistry([], 50, [], () => {}), noOptions);
+    for (let i = 0; i < 100; i++) {
+      const values = Object.fromEntries(features.map(({ name }, f) => [name, 1000 * f + i]));
+      const result = wideDecoder.decode(Buffer.from(parcel(0, values)), null);
+      if (result.ok) held.add(result.event);
+    }
+    const [all] = held.take();
+    const ranges = features.map(({ name }) => {
+      const sketch = sketchOf(all!.body, name);
+      return [sketch.min, sketch.max, sketch.counts.finite];
+    });
+    expect(ranges).toEqual(features.map((_, f) => [1000 * f, 1000 * f + 99, 100]));
+  });
+
   it("the same events make the same bytes, so that a replay after a crash writes what was lost", () => {
     const bodies = [accumulator(), accumulator()].map((held) => {
       for (let i = 0; i < 6000; i++) add(held, parcel(i % 60, { cargo: { temp: (i * 31) % 977 } }));
