@@ -34,7 +34,7 @@ export const initialTables: Migration = async (transaction, types) => {
       events bigint NOT NULL, amended bigint NOT NULL, body ${blob} NOT NULL,
       PRIMARY KEY (stream, level, slice, feature, start_ms))`,
     sql`CREATE TABLE stream_slice (stream text NOT NULL, slice text NOT NULL, PRIMARY KEY (stream, slice))`,
-    sql`CREATE INDEX rollup_by_time ON rollup (stream, level, start_ms)`,
+    sql`CREATE INDEX rollup_by_time ON rollup (stream, level, start_ms, slice)`,
     sql`CREATE TABLE evaluation (
       stream text NOT NULL, horizon text NOT NULL, window_start_ms bigint NOT NULL, window_end_ms bigint NOT NULL,
       baseline_id text NOT NULL, slice text NOT NULL, feature text NOT NULL, state text NOT NULL, events bigint NOT NULL,
