@@ -48,8 +48,16 @@ export interface CommandResult {
 }
 
 /** Runs the built `moorline` command to its end. */
-export async function moorlineCommand(args: readonly string[], cwd: string): Promise<CommandResult> {
-  const child = spawn(process.execPath, [MAIN, ...args], { cwd, stdio: ["ignore", "pipe", "pipe"] });
+export async function moorlineCommand(
+  args: readonly string[],
+  cwd: string,
+  env: Readonly<Record<string, string>> = {},
+): Promise<CommandResult> {
+  const child = spawn(process.execPath, [MAIN, ...args], {
+    cwd,
+    env: { ...process.env, ...env },
+    stdio: ["ignore", "pipe", "pipe"],
+  });
   let stdout = "";
   let stderr = "";
   child.stdout.on("data", (chunk: Buffer) => {

@@ -1,1 +1,2 @@
+export { prometheusRules } from "./prometheus-rules.js";
 export { type EvaluatorOptions, startEvaluator } from "./start-evaluator.js";

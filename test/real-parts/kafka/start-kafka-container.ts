@@ -1,4 +1,3 @@
-import { randomBytes } from "node:crypto";
 import { GenericContainer, getContainerRuntimeClient } from "testcontainers";
 import { freePort } from "../free-port.js";
 import { NotToBeHad } from "../not-to-be-had.js";
@@ -6,6 +5,7 @@ import { took } from "../took.js";
 import { brokerAnswers } from "./broker-answers.js";
 import { brokerProperties } from "./broker-properties.js";
 import { KAFKA_VERSION } from "./kafka-jars.js";
+import { newClusterId } from "./new-cluster-id.js";
 
 const IMAGE = `apache/kafka:${KAFKA_VERSION}`;
 const DATA = "/tmp/kafka-data";
@@ -36,7 +36,7 @@ export async function startKafkaContainer(): Promise<KafkaContainer> {
     controller: `127.0.0.1:${controllerPort}`,
     dataDir: DATA,
   });
-  const clusterId = randomBytes(16).toString("base64url");
+  const clusterId = newClusterId();
   const command =
     `${JAVA} kafka.tools.StorageTool format --standalone -t ${clusterId} -c ${CONFIG} && ` +
     `exec ${JAVA} kafka.Kafka ${CONFIG}`;

@@ -1,4 +1,3 @@
-import { randomBytes } from "node:crypto";
 import { mkdir, mkdtemp, rm, writeFile } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
@@ -9,6 +8,7 @@ import { took } from "../took.js";
 import { brokerAnswers } from "./broker-answers.js";
 import { brokerProperties } from "./broker-properties.js";
 import { KAFKA_VERSION, kafkaJars } from "./kafka-jars.js";
+import { newClusterId } from "./new-cluster-id.js";
 
 export interface KafkaOptions {
   readonly port?: number;
@@ -86,7 +86,7 @@ export async function startKafka(options: KafkaOptions = {}): Promise<RunningKaf
 }
 
 async function format(java: readonly string[], config: string): Promise<void> {
-  const clusterId = randomBytes(16).toString("base64url");
+  const clusterId = newClusterId();
   const args = [...java, "kafka.tools.StorageTool", "format", "--standalone", "-t", clusterId, "-c", config];
   const { exitCode, stdout, stderr } = await runProgram("java", args);
   if (exitCode !== 0) throw new Error(`Kafka's storage could not be formatted: ${stdout}${stderr}`);
