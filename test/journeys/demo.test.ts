@@ -100,6 +100,7 @@ describe("moorline run --demo", () => {
     const [, how, from] = await streaming(child);
     expect([how, from]).toEqual(["goes on", seen.next]);
     expect(child.out).toContain(`Baseline  ${seen.baseline} is set from the last time.`);
+    expect(child.out).toContain("The compressors of depot north are tired");
     await new Promise((resolve) => setTimeout(resolve, 8_000));
     expect(await child.end("SIGTERM")).toBe(0);
     expect(child.err).toBe("");

@@ -17,7 +17,10 @@ All of this data is invented. Event time runs at 60 times the clock: an hour pas
 }
 
 /** Where to look, once it answers. */
-export function whereToLook(url: string): string {
+export function whereToLook(url: string, isTired: boolean): string {
+  const tells = isTired
+    ? "The compressors of depot north are tired: the upper tail of cargo_temp is heavier there."
+    : "In about a minute the compressors of depot north tire: the upper tail of cargo_temp gets heavier there.";
   return `
   page       ${url}/
   features   ${url}/v1/streams/${DEMO_STREAM}/features
@@ -25,14 +28,15 @@ export function whereToLook(url: string): string {
   metrics    ${url}/metrics
   API        ${url}/v1/openapi.json
 
-In about a minute the compressors of depot north tire: the upper tail of cargo_temp gets heavier there. Ctrl-C stops.
+${tells} Ctrl-C stops.
 
 `;
 }
 
 /** What to try once a feature is adrift. */
 export function whatToTry(folder: DemoFolder, url: string): string {
-  const config = relative(process.cwd(), folder.config);
+  const near = relative(process.cwd(), folder.config);
+  const config = near.startsWith("..") ? folder.config : near;
   return `
 What to try next, in another terminal:
   ${COMMAND} pairs --config ${config} --feature cargo_temp --slice depot=north --from last-5m --to last

@@ -56,6 +56,11 @@ export class FeedWriter {
     return this.#timeOf(this.#next);
   }
 
+  /** Are the compressors tired already? */
+  get isTired(): boolean {
+    return tirednessAt((this.nextMs - this.originMs) / 60_000) > 0;
+  }
+
   start(onFailure: (error: unknown) => void): void {
     this.#onFailure = onFailure;
     this.#startedAtMs = performance.now();

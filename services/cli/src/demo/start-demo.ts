@@ -102,7 +102,7 @@ async function stream({ io, signal, folder, config, store, feed, services }: Str
   io.out(
     `Feed      ${goesOn} at ${eventTime(feed.nextMs)} event time: about 150 events an event minute, in 3 files that grow.\n`,
   );
-  io.out(whereToLook(url));
+  io.out(whereToLook(url, feed.isTired));
   let fail: (error: unknown) => void = () => {};
   const failed = new Promise<never>((_, reject) => {
     fail = reject;
