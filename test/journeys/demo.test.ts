@@ -100,7 +100,7 @@ describe("moorline run --demo", () => {
     const [, how, from] = await streaming(child);
     expect([how, from]).toEqual(["goes on", seen.next]);
     expect(child.out).toContain(`Baseline  ${seen.baseline} is set from the last time.`);
-    expect(child.out).toContain("The compressors of depot north are tired");
+    await child.until("where the drift stands", 5_000, match(/The compressors of depot north are tired/));
     await new Promise((resolve) => setTimeout(resolve, 8_000));
     expect(await child.end("SIGTERM")).toBe(0);
     expect(child.err).toBe("");
@@ -124,9 +124,9 @@ describe("moorline run --demo", () => {
   });
 
   it("says that its port is taken before it does anything else", async () => {
-    const first = startDemo(await freePort());
+    const port = String(await freePort());
+    const first = startDemo(Number(port));
     await streaming(first);
-    const port = /http:\/\/localhost:(\d+)\//.exec(first.out)![1]!;
     const second = await runCli(["run", "--demo"], {
       cwd: folder,
       env: { MOORLINE_GATEWAY_PORT: port, MOORLINE_DEMO_DIR: join(folder, "other") },
