@@ -21,10 +21,10 @@ export interface CdfKnots {
 }
 
 /**
- * The envelope in units of k of a sealed sketch. The largest rank error over the corpus of docs/accuracy.md stays below it,
- * one-way merges of 1,440 sketches included.
+ * The envelope in units of k of a sealed sketch: half a cluster. Measured: 0.17 units at most over the corpus of docs/accuracy.md, one-way merges
+ * of 1,440 sketches included; 0.33 on real rows that come in the order of the clock (test/journeys/real-data).
  */
-export const ENVELOPE_UNITS = 0.25;
+export const ENVELOPE_UNITS = 0.5;
 
 /** The distribution that the entries and atoms of a state stand for. */
 export function cdfKnotsOf(state: SketchState): CdfKnots {
