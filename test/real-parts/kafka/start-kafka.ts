@@ -57,7 +57,14 @@ export async function startKafka(options: KafkaOptions = {}): Promise<RunningKaf
     dataDir,
   };
   await writeFile(config, brokerProperties(addresses, options.extraConfig));
-  const java = [`-Xmx${options.heap ?? "384m"}`, ...JAVA_FLAGS, "-cp", `${jars}/*`];
+  // Native libraries are unpacked there; a broker that is killed does not delete them.
+  const java = [
+    `-Xmx${options.heap ?? "384m"}`,
+    `-Djava.io.tmpdir=${home}`,
+    ...JAVA_FLAGS,
+    "-cp",
+    `${jars}/*`,
+  ];
   await format(java, config);
   const start = async () => {
     const broker = new HostProcess("the Kafka broker", "java", [...java, "kafka.Kafka", config], {
