@@ -4,6 +4,7 @@ import { fileURLToPath } from "node:url";
 import type { KafkaSourceConfig, StreamConfig } from "@moorline/config";
 import { type Admin, Kafka, type KafkaMessage, logLevel } from "kafkajs";
 import { parcelStream } from "../fixtures/stream-config.js";
+import { confluentPython } from "../real-parts/index.js";
 
 export type Codec = "none" | "gzip" | "snappy" | "lz4" | "zstd";
 
@@ -40,7 +41,7 @@ export class KafkaBench {
   /** Produces through librdkafka (python3-confluent-kafka). */
   async produce(topic: string, codec: Codec, records: Iterable<ToProduce>): Promise<void> {
     const script = fileURLToPath(new URL("./produce-lines.py", import.meta.url));
-    const child = spawn("/usr/bin/python3", [script, this.#bootstrap, topic, codec], {
+    const child = spawn(await confluentPython(), [script, this.#bootstrap, topic, codec], {
       stdio: ["pipe", "ignore", "pipe"],
     });
     let stderr = "";

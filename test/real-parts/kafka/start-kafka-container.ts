@@ -1,4 +1,10 @@
-import { GenericContainer, getContainerRuntimeClient } from "testcontainers";
+import { setTimeout as sleep } from "node:timers/promises";
+import {
+  GenericContainer,
+  getContainerRuntimeClient,
+  ImageName,
+  type StartedTestContainer,
+} from "testcontainers";
 import { freePort } from "../free-port.js";
 import { NotToBeHad } from "../not-to-be-had.js";
 import { took } from "../took.js";
@@ -24,10 +30,9 @@ export interface KafkaContainer {
  * it is `java` and the broker's jars in /opt/kafka/libs. It uses the host's network, so that one address serves inside and outside.
  */
 export async function startKafkaContainer(): Promise<KafkaContainer> {
+  // Its clean-up container would have to be pulled; stop() removes the broker's. What a killed run leaves is found by the label.
   process.env["TESTCONTAINERS_RYUK_DISABLED"] = "true";
-  await getContainerRuntimeClient().catch((error: unknown) => {
-    throw new NotToBeHad("a Docker engine", `start one, or set DOCKER_HOST (${(error as Error).message})`);
-  });
+  const engine = await imageOrThrow();
   const [port, controllerPort] = [await freePort(), await freePort()];
   const bootstrap = `127.0.0.1:${port}`;
   const properties = brokerProperties({
@@ -42,19 +47,14 @@ export async function startKafkaContainer(): Promise<KafkaContainer> {
     `exec ${JAVA} kafka.Kafka ${CONFIG}`;
   const container = await new GenericContainer(IMAGE)
     .withNetworkMode("host")
+    .withLabels({ "moorline.test": "kafka" })
     .withEntrypoint(["sh", "-c"])
     .withCommand([command])
     .withCopyContentToContainer([{ content: properties, target: CONFIG }])
     .withStartupTimeout(START_WITHIN_MS)
     .start();
-  const deadline = Date.now() + START_WITHIN_MS;
-  while (!(await brokerAnswers(bootstrap))) {
-    if (Date.now() > deadline) {
-      await container.stop();
-      throw new Error(`the broker in ${IMAGE} does not answer at ${bootstrap}`);
-    }
-  }
-  const via = `${IMAGE} in a container`;
+  await untilItAnswers(container, bootstrap);
+  const via = `${IMAGE} in a container, Docker engine ${engine}`;
   took("Kafka", via);
   return {
     bootstrap,
@@ -63,4 +63,45 @@ export async function startKafkaContainer(): Promise<KafkaContainer> {
       await container.stop();
     },
   };
+}
+
+/** Makes sure of an engine and of the image, which is pulled where it is not there; returns the engine's version. */
+async function imageOrThrow(): Promise<string> {
+  const client = await getContainerRuntimeClient().catch((error: unknown) => {
+    throw new NotToBeHad("a Docker engine", `start one, or set DOCKER_HOST (${(error as Error).message})`);
+  });
+  const image = ImageName.fromString(IMAGE);
+  if (!(await client.image.exists(image))) {
+    await client.image.pull(image).catch((error: unknown) => {
+      throw new NotToBeHad(
+        `the image ${IMAGE}`,
+        `pull it, or build it as .ci/run does (${(error as Error).message})`,
+      );
+    });
+  }
+  return String(client.info.containerRuntime.serverVersion);
+}
+
+/** Waits for the broker; where it does not come, stops the container and fails with its last words. */
+async function untilItAnswers(container: StartedTestContainer, bootstrap: string): Promise<void> {
+  const deadline = Date.now() + START_WITHIN_MS;
+  while (!(await brokerAnswers(bootstrap))) {
+    if (Date.now() > deadline) {
+      const tail = await lastWords(container);
+      await container.stop();
+      throw new Error(`the broker in ${IMAGE} does not answer at ${bootstrap}: ${tail}`);
+    }
+    await sleep(150);
+  }
+}
+
+async function lastWords(container: StartedTestContainer): Promise<string> {
+  let tail = "";
+  const logs = await container.logs({ tail: 30 });
+  logs.on("data", (chunk: Buffer | string) => {
+    tail = (tail + String(chunk)).slice(-2_000);
+  });
+  await sleep(500);
+  logs.destroy();
+  return tail;
 }
