@@ -1,4 +1,4 @@
-import { existsSync } from "node:fs";
+import { existsSync, readFileSync } from "node:fs";
 import { mkdir, rename, rm } from "node:fs/promises";
 import { homedir } from "node:os";
 import { join } from "node:path";
@@ -7,17 +7,20 @@ import { NotToBeHad } from "../not-to-be-had.js";
 import { onPath } from "../on-path.js";
 import { runProgram } from "../run-program.js";
 
-export const KAFKA_VERSION = "4.1.1";
+const POM = fileURLToPath(new URL("./pom.xml", import.meta.url));
 
-/** Where jars are kept between runs. */
+/** The version that pom.xml asks Maven for. */
+export const KAFKA_VERSION = versionIn(readFileSync(POM, "utf8"));
+
+/** Where jars are kept between runs. A cache folder of no name is none, as the XDG base directory specification says. */
 export function testCache(): string {
-  return join(process.env["XDG_CACHE_HOME"] ?? join(homedir(), ".cache"), "moorline-test");
+  return join(process.env["XDG_CACHE_HOME"] || join(homedir(), ".cache"), "moorline-test");
 }
 
 /** The folder of a broker's jars, copied once by Maven. */
 export async function kafkaJars(): Promise<string> {
   const folder = join(testCache(), `kafka-${KAFKA_VERSION}`);
-  if (existsSync(join(folder, `kafka_2.13-${KAFKA_VERSION}.jar`))) return folder;
+  if (isWhole(folder)) return folder;
   const mvn = onPath("mvn");
   if (mvn === null || onPath("java") === null) {
     throw new NotToBeHad(
@@ -27,12 +30,11 @@ export async function kafkaJars(): Promise<string> {
   }
   const part = `${folder}.${process.pid}`;
   await mkdir(part, { recursive: true });
-  const pom = fileURLToPath(new URL("./pom.xml", import.meta.url));
   const args = [
     "-q",
     "-B",
     "-f",
-    pom,
+    POM,
     "dependency:copy-dependencies",
     "-DincludeScope=runtime",
     `-DoutputDirectory=${part}`,
@@ -40,7 +42,22 @@ export async function kafkaJars(): Promise<string> {
   const { exitCode, stdout, stderr } = await runProgram(mvn, args);
   if (exitCode !== 0)
     throw new NotToBeHad("Apache Kafka", `Maven could not copy its jars: ${(stdout + stderr).slice(-500)}`);
-  if (existsSync(folder)) await rm(part, { recursive: true });
-  else await rename(part, folder);
+  if (isWhole(folder)) {
+    await rm(part, { recursive: true });
+  } else {
+    await rm(folder, { recursive: true, force: true });
+    await rename(part, folder);
+  }
   return folder;
+}
+
+/** A copy that was broken off lacks jars; Maven's own folder is only renamed into place when it is done. */
+function isWhole(folder: string): boolean {
+  return existsSync(join(folder, `kafka_2.13-${KAFKA_VERSION}.jar`));
+}
+
+function versionIn(pom: string): string {
+  const version = /<kafka\.version>(.+?)</.exec(pom)?.[1];
+  if (version === undefined) throw new Error("pom.xml has no kafka.version");
+  return version;
 }
