@@ -1,9 +1,9 @@
+import type { PairsAnswer } from "@moorline/answers";
 import { NumericSketch } from "@moorline/sketch";
 import { numericSideOf, quantileOf } from "@moorline/stats";
 import { openStore, type RollupRow } from "@moorline/store";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { SeededRandom } from "../src/demo/random.js";
-import type { PairsAnswer } from "../src/pairs/read-pairs.js";
 import { moorline, TestFolder } from "./capture-io.js";
 
 const folder = new TestFolder();

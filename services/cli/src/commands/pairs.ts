@@ -50,7 +50,7 @@ async function printPairs(options: PairsOptions, io: CommandIo): Promise<void> {
     const together = "--against and --baseline";
     throw new MoorlineError("MOORLINE_INPUT_OPTIONS_TOGETHER", { command: COMMAND, options: together });
   }
-  const { readPairs } = await import("../pairs/read-pairs.js");
+  const { readPairs } = await import("@moorline/answers");
   const { formatPairs } = await import("../pairs/format-pairs.js");
   const answer = await withStore(config, { create: false }, async (store) => {
     const words = await storedTimeWords(store, stream, io.nowMs());

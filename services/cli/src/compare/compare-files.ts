@@ -1,8 +1,8 @@
+import { compareFeature, type FeatureComparison } from "@moorline/answers";
 import { type FileColumn, FileSides, type OnProgress } from "@moorline/baseline";
 import { nearestName } from "@moorline/config";
 import { MoorlineError } from "@moorline/errors";
 import type { NumericSide } from "@moorline/stats";
-import { compareFeature, type FeatureComparison } from "./feature-comparison.js";
 
 /** What `moorline compare --format json` prints. */
 export interface FileComparison {

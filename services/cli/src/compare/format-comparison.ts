@@ -1,6 +1,6 @@
+import type { FeatureComparison } from "@moorline/answers";
 import { markdownTable, textTable, visible } from "../terminal/table.js";
 import type { FileComparison } from "./compare-files.js";
-import type { FeatureComparison } from "./feature-comparison.js";
 
 export const COMPARE_FORMATS = ["table", "json", "markdown"] as const;
 export type CompareFormat = (typeof COMPARE_FORMATS)[number];

@@ -1,5 +1,5 @@
+import type { PairsAnswer } from "@moorline/answers";
 import { qqPlotSvg } from "@moorline/figures";
-import type { PairsAnswer } from "./read-pairs.js";
 
 export const PAIRS_FORMATS = ["json", "csv", "svg"] as const;
 export type PairsFormat = (typeof PAIRS_FORMATS)[number];
