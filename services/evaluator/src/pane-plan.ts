@@ -1,5 +1,5 @@
 import type { PendingPane } from "@moorline/store";
-import { paneStart } from "@moorline/windows";
+import { DAY_MS, paneStart } from "@moorline/windows";
 
 export interface PanePlanInput {
   readonly pending: readonly PendingPane[];
@@ -25,8 +25,9 @@ export interface PanePlan {
 /**
  * Which panes to close and which to amend.
  *
- * Edges  A silence longer than the longest horizon is not walked through pane by pane: closing goes on one longest horizon before the next
- *        pane that has events, so that every window which holds an event is evaluated.
+ * Edges  A silence of more than two longest horizons is not walked through to its end: closing goes on to the end of the day that it began in,
+ *        so that its hours and the day get their rollups, and from there one longest horizon before the next pane that has events, so that every
+ *        window which holds an event is evaluated.
  */
 export function panePlan(input: PanePlanInput): PanePlan {
   const { pending, paneMs, mostPanes } = input;
@@ -34,27 +35,33 @@ export function panePlan(input: PanePlanInput): PanePlan {
   const closedThroughMs = input.closedThroughMs ?? first;
   if (closedThroughMs === undefined) return { closing: [], late: [], more: false };
   const late = pending.map((pane) => pane.paneStartMs).filter((start) => start < closedThroughMs);
-  const next = pending.find((pane) => pane.paneStartMs >= closedThroughMs)?.paneStartMs;
-  const endMs = input.nothingActive
-    ? (pending.at(-1)?.paneStartMs ?? closedThroughMs - paneMs) + paneMs
-    : paneStart(input.watermarkMs, paneMs);
-  const startMs = afterSilence(closedThroughMs, next ?? endMs, input);
+  const { startMs, endMs } = closingRange(input, closedThroughMs);
   const closing: number[] = [];
-  for (let start = startMs; start + paneMs <= endMs && closing.length < mostPanes; start += paneMs)
+  for (let start = startMs; start + paneMs <= endMs && closing.length < mostPanes; start += paneMs) {
     closing.push(start);
-  return {
-    closing,
-    late: late.slice(0, mostPanes),
-    more: closing.length === mostPanes || late.length > mostPanes,
-  };
+  }
+  const stopped = closing.length > 0 && closing.at(-1)! + paneMs < lastEnd(input, closedThroughMs);
+  return { closing, late: late.slice(0, mostPanes), more: stopped || late.length > mostPanes };
 }
 
-function afterSilence(
+/** The end of the last pane that may close now. */
+function lastEnd(
+  { pending, nothingActive, watermarkMs, paneMs }: PanePlanInput,
   closedThroughMs: number,
-  nextMs: number,
-  { longestHorizonMs, paneMs }: PanePlanInput,
 ): number {
-  const resumeMs = paneStart(nextMs - longestHorizonMs, paneMs);
-  const silentMs = nextMs - closedThroughMs;
-  return silentMs > 2 * longestHorizonMs ? Math.max(closedThroughMs, resumeMs) : closedThroughMs;
+  if (!nothingActive) return paneStart(watermarkMs, paneMs);
+  return (pending.at(-1)?.paneStartMs ?? closedThroughMs - paneMs) + paneMs;
+}
+
+function closingRange(
+  input: PanePlanInput,
+  closedThroughMs: number,
+): { readonly startMs: number; readonly endMs: number } {
+  const { pending, longestHorizonMs, paneMs } = input;
+  const endMs = lastEnd(input, closedThroughMs);
+  const nextMs = pending.find((pane) => pane.paneStartMs >= closedThroughMs)?.paneStartMs ?? endMs;
+  if (nextMs - closedThroughMs <= 2 * longestHorizonMs) return { startMs: closedThroughMs, endMs };
+  const dayEndMs = Math.ceil(closedThroughMs / DAY_MS) * DAY_MS;
+  if (closedThroughMs < dayEndMs) return { startMs: closedThroughMs, endMs: Math.min(endMs, dayEndMs) };
+  return { startMs: Math.max(closedThroughMs, paneStart(nextMs - longestHorizonMs, paneMs)), endMs };
 }

@@ -25,6 +25,8 @@ const LEASE_MS = 30_000;
 /** Features judged before other work of the process gets its turn. */
 const JUDGED_AT_A_STRETCH = 50;
 
+const QUIET: ReadonlySet<string | undefined> = new Set(["holding", "thin"]);
+
 export interface StreamEvaluatorParts {
   readonly stream: StreamConfig;
   readonly store: Store;
@@ -71,6 +73,16 @@ export class StreamEvaluator {
 
   /** Closes what can be closed. True when there is more to do at once. */
   async tick(): Promise<boolean> {
+    try {
+      return await this.#tick();
+    } catch (error) {
+      // Whether the last write came through may not be known: what is in memory is read again before the next one.
+      this.#lease = null;
+      throw error;
+    }
+  }
+
+  async #tick(): Promise<boolean> {
     const { store, stream, nowMs } = this.#parts;
     if (!(await this.#lead())) return false;
     const partitions = await store.ingest.partitions(stream.name);
@@ -209,8 +221,10 @@ export class StreamEvaluator {
   #logChanges(entries: readonly LogbookWrite[]): void {
     const { logger } = this.#parts.telemetry;
     for (const entry of entries) {
-      const { to } = (entry.detail ?? {}) as { to?: string };
+      const { from, to } = (entry.detail ?? {}) as { from?: string; to?: string };
       if (to === "adrift" || to === "silent") logger.warn({ stream: entry.stream }, entry.sentence);
+      // A slice with few events goes to and fro between the two all day.
+      else if (QUIET.has(from) && QUIET.has(to)) logger.debug({ stream: entry.stream }, entry.sentence);
       else logger.info({ stream: entry.stream }, entry.sentence);
     }
   }
