@@ -52,7 +52,10 @@ async function problemOf(response: Response): Promise<{ status: number; detail: 
 
 describe("quantile-pairs", () => {
   it("answers exactly what the values of the range say, with n, window, baseline and slice", async () => {
-    const answer = (await (await get(`${FEATURE}/quantile-pairs?${RANGE}`)).json()) as Record<string, unknown>;
+    const answer = (await (await get(`${FEATURE}/quantile-pairs?${RANGE}`)).json()) as Record<
+      string,
+      unknown
+    >;
     expect(answer).toMatchObject({
       feature: "cargo_temp",
       unit: "°C",

@@ -100,7 +100,7 @@ interface FeatureTableProps {
 
 function FeatureTable({ stream, rows, slice }: FeatureTableProps): VNode {
   return (
-    <table>
+    <table class="features">
       <caption>{`Slice ${slice}, worst first; each feature on the horizon on which it is worst. Tail figures are multiples of the baseline's own share.`}</caption>
       <thead>
         <tr>
@@ -142,8 +142,12 @@ function FeatureTable({ stream, rows, slice }: FeatureTableProps): VNode {
               <StateMark state={row.state} /> <span class="faint">{row.horizon}</span>
             </td>
             <td class="reading-cell">{row.reading}</td>
-            <td class="number">{ratioText(row.tailRatio.lower)}</td>
-            <td class="number">{ratioText(row.tailRatio.upper)}</td>
+            <td class="number" data-label="Lower tail">
+              {ratioText(row.tailRatio.lower)}
+            </td>
+            <td class="number" data-label="Upper tail">
+              {ratioText(row.tailRatio.upper)}
+            </td>
             <td class="number wide">{row.ks === null ? "–" : numberText(row.ks, 3)}</td>
             <td class="number wide">{row.n === null ? "–" : countText(row.n)}</td>
             <td class="wide">
