@@ -31,7 +31,8 @@ nav ul { list-style: none; padding: 0; margin: 0.4rem 0; display: flex; flex-wra
 [aria-current="true"] { font-weight: 700; text-decoration: none; color: var(--ink); }
 dl { display: grid; grid-template-columns: max-content 1fr; gap: 0.2rem 1rem; } dt { color: var(--faint); } dd { margin: 0; overflow-wrap: anywhere; }
 @media (max-width: 40rem) { dl { grid-template-columns: 1fr; } dd { margin-bottom: 0.5rem; } .wide { display: none; }
-  .features, .features tbody, .features tr, .features td { display: block; } .features thead { position: absolute; left: -99rem; }
+  .features, .features caption, .features tbody, .features tr, .features td { display: block; } .features thead { position: absolute; left: -99rem; }
+  .features td.wide { display: none; }
   .features tr { border-bottom: 1px solid var(--rule); padding: 0.5rem 0; } .features td { border: 0; padding: 0.1rem 0; text-align: left; }
   .features td[data-label] { display: inline-block; margin-right: 1.2rem; } .features td[data-label]::before { content: attr(data-label) " "; color: var(--faint); } }
 @media (prefers-reduced-motion: no-preference) { html { scroll-behavior: smooth; } }
