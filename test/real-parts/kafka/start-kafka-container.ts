@@ -47,7 +47,7 @@ export async function startKafkaContainer(): Promise<KafkaContainer> {
     `exec ${JAVA} kafka.Kafka ${CONFIG}`;
   const container = await new GenericContainer(IMAGE)
     .withNetworkMode("host")
-    .withLabels({ "moorline.test": "kafka" })
+    .withLabels({ "moorline.test": process.env["MOORLINE_TEST_RUN"] ?? String(process.pid) })
     .withEntrypoint(["sh", "-c"])
     .withCommand([command])
     .withCopyContentToContainer([{ content: properties, target: CONFIG }])
