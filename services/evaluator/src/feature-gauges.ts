@@ -3,6 +3,21 @@ import type { Metrics } from "@moorline/telemetry";
 
 const STATES = ["holding", "straining", "adrift", "thin", "silent"] as const;
 
+/** Takes every series of a feature away: another process speaks for it now. */
+export function hideFeature(metrics: Metrics, row: FeatureStateRow): void {
+  const labels = labelsOf(row);
+  for (const state of STATES) metrics.featureState.remove({ ...labels, state });
+  for (const tail of ["lower", "upper"] as const) metrics.tailExceedanceRatio.remove({ ...labels, tail });
+  const others = [
+    metrics.featureStateSince,
+    metrics.windowValues,
+    metrics.ksDistance,
+    metrics.wassersteinScaled,
+    metrics.missingFraction,
+  ];
+  for (const gauge of others) gauge.remove(labels);
+}
+
 /** What of a stored comparison is a metric. */
 interface ComparedFigures {
   readonly n?: { readonly production: number };

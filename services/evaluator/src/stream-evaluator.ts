@@ -12,7 +12,7 @@ import type {
 import type { Telemetry } from "@moorline/telemetry";
 import { BaselineSides } from "./baseline-sides.js";
 import { amendPane, closePane, type Round, type RoundInput } from "./evaluation-round.js";
-import { showFigures, showState } from "./feature-gauges.js";
+import { hideFeature, showFigures, showState } from "./feature-gauges.js";
 import { panePlan } from "./pane-plan.js";
 import { silenceChange } from "./silence.js";
 import { StateBook } from "./state-book.js";
@@ -130,6 +130,7 @@ export class StreamEvaluator {
     this.#lastRenewedMs = nowMs();
     if (lease === null) {
       this.#lease = null;
+      this.#hideAll();
       return false;
     }
     if (this.#lease?.token === lease.token) return true;
@@ -227,6 +228,16 @@ export class StreamEvaluator {
       else if (QUIET.has(from) && QUIET.has(to)) logger.debug({ stream: entry.stream }, entry.sentence);
       else logger.info({ stream: entry.stream }, entry.sentence);
     }
+  }
+
+  /** A process that does not lead says nothing of the stream's features: what it knows is old. */
+  #hideAll(): void {
+    const { telemetry, stream } = this.#parts;
+    for (const row of this.#states.all()) hideFeature(telemetry.metrics, row);
+    for (const { label: horizon } of stream.horizons)
+      telemetry.metrics.evaluationAge.remove({ stream: stream.name, horizon });
+    telemetry.metrics.watermarkAge.remove({ stream: stream.name });
+    this.#states = new StateBook([]);
   }
 
   /** States and last figures as the store has them: a restart must not blank an alert. */

@@ -153,8 +153,12 @@ describe("StreamEvaluator", () => {
     await leader.release();
     await at.settle(waiting);
     expect((await at.store.evaluations.progress("s"))!.closedThroughMs).toBe(START + 22 * MINUTE);
+    expect(await at.telemetry.registry.metrics()).toContain('moorline_feature_state{stream="s",feature="f"');
     await leader.tick();
     expect((await at.store.evaluations.progress("s"))!.closedThroughMs).toBe(START + 22 * MINUTE);
+    expect(await at.telemetry.registry.metrics()).not.toContain(
+      'moorline_feature_state{stream="s",feature="f"',
+    );
   });
 
   it("says thin, with the reason, while no baseline is active; a new baseline starts the decision anew", async () => {
