@@ -1,4 +1,4 @@
-/** Writes little-endian numbers and varints into a growing array. */
+/** Writes little-endian numbers and varints into a growing array, which one writer uses again for text after text. */
 export class ByteWriter {
   #bytes: Uint8Array<ArrayBuffer>;
   #view: DataView;
@@ -7,6 +7,12 @@ export class ByteWriter {
   constructor(capacity: number) {
     this.#bytes = new Uint8Array(capacity);
     this.#view = new DataView(this.#bytes.buffer);
+  }
+
+  /** Starts anew with room for so many bytes. */
+  restart(capacity: number): void {
+    this.#at = 0;
+    this.#room(capacity);
   }
 
   byte(value: number): void {
