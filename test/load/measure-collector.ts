@@ -8,7 +8,7 @@ import { once } from "node:events";
 import { fileURLToPath } from "node:url";
 import { parseArgs } from "node:util";
 import { Kafka, logLevel } from "kafkajs";
-import { startKafka } from "../real-parts/index.js";
+import { confluentPython, startKafka } from "../real-parts/index.js";
 import {
   CONTENDERS,
   type Contender,
@@ -125,7 +125,9 @@ async function produce(bootstrap: string): Promise<void> {
     values.seed,
     values.rate,
   ];
-  const child = spawn("/usr/bin/python3", [script, ...args], { stdio: ["ignore", "inherit", "inherit"] });
+  const child = spawn(await confluentPython(), [script, ...args], {
+    stdio: ["ignore", "inherit", "inherit"],
+  });
   const [code] = await once(child, "close");
   if (code !== 0) throw new Error(`the producer ended with ${code}`);
 }

@@ -22,7 +22,7 @@ const log = (line: string) => process.stderr.write(`${line}\n`);
 
 const folder = await mkdtemp(join(tmpdir(), "moorline-memory-"));
 const kafka = await startKafka({
-  extraConfig: { "log.retention.bytes": "200000000", "log.retention.check.interval.ms": "5000" },
+  extraConfig: { "log.retention.bytes": "1000000000", "log.retention.check.interval.ms": "5000" },
 });
 try {
   const admin = new Kafka({ brokers: [kafka.bootstrap], logLevel: logLevel.NOTHING }).admin();
@@ -30,10 +30,20 @@ try {
   await admin.createTopics({ topics: [{ topic: TOPIC, numPartitions: 2 }], waitForLeaders: true });
   await admin.disconnect();
   await writeFile(join(folder, "moorline.yaml"), config(kafka.bootstrap));
-  const child = spawn(process.execPath, [main, "run", "--config", join(folder, "moorline.yaml")], {
-    cwd: folder,
-    stdio: ["ignore", "ignore", "inherit"],
-  });
+  const child = spawn(
+    process.execPath,
+    [
+      ...(process.env["MOORLINE_MEMORY_NODE_FLAGS"]?.split(" ") ?? []),
+      main,
+      "run",
+      "--config",
+      join(folder, "moorline.yaml"),
+    ],
+    {
+      cwd: folder,
+      stdio: ["ignore", "ignore", "inherit"],
+    },
+  );
   await sleep(5_000);
   const producer = startProducer(kafka.bootstrap);
   const samples = await residentMegabytes(child.pid!, SECONDS);
