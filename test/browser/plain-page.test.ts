@@ -4,13 +4,12 @@ import { join } from "node:path";
 import { setTimeout as sleep } from "node:timers/promises";
 import { type Browser, chromium, type Page } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { MoorlineProcess } from "../chaos/moorline-process.js";
-import { CHROMIUM_FLAGS, chromiumPath, freePort } from "../real-parts/index.js";
+import { CHROMIUM_FLAGS, CliChild, chromiumPath, freePort } from "../real-parts/index.js";
 
 // The plain page on the running demo, in a real Chromium. Not covered here: anything that needs a drift (journeys/demo, journeys/prometheus-alert).
 
 let folder: string;
-let demo: MoorlineProcess;
+let demo: CliChild;
 let browser: Browser;
 let base: string;
 
@@ -18,9 +17,12 @@ beforeAll(async () => {
   folder = await mkdtemp(join(tmpdir(), "moorline-page-"));
   const port = await freePort();
   base = `http://127.0.0.1:${port}`;
-  demo = new MoorlineProcess(["run", "--demo"], folder, {
-    MOORLINE_DEMO_DIR: join(folder, "demo"),
-    MOORLINE_GATEWAY_PORT: String(port),
+  demo = new CliChild(["run", "--demo"], {
+    cwd: folder,
+    env: {
+      MOORLINE_DEMO_DIR: join(folder, "demo"),
+      MOORLINE_GATEWAY_PORT: String(port),
+    },
   });
   browser = await chromium.launch({ executablePath: chromiumPath(), args: [...CHROMIUM_FLAGS] });
   const deadline = Date.now() + 90_000;

@@ -8,9 +8,8 @@ import { fileURLToPath } from "node:url";
 import { NumericSketch } from "@moorline/sketch";
 import { openStore } from "@moorline/store";
 import { Kafka, logLevel } from "kafkajs";
-import { confluentPython, startKafka } from "../real-parts/index.js";
+import { CliChild, type CliResult, confluentPython, runCli, startKafka } from "../real-parts/index.js";
 import { expectedPanes, type ProducedEvents } from "./expected-counts.js";
-import { MoorlineProcess, moorlineCommand } from "./moorline-process.js";
 
 export interface ChaosOptions {
   readonly events: number;
@@ -34,7 +33,7 @@ export interface ChaosResult {
   readonly claims: number;
   /** Every pane, slice and feature whose counts differ from what was produced. */
   readonly differences: readonly string[];
-  readonly audit: { readonly exitCode: number | null; readonly stdout: string };
+  readonly audit: CliResult;
   readonly storePath: string;
   readonly configPath: string;
   readonly folder: string;
@@ -68,7 +67,7 @@ export async function chaosRun(options: ChaosOptions): Promise<ChaosResult> {
   try {
     await writeFile(configPath, configText(kafka.bootstrap, storePath));
     await createTopic(kafka.bootstrap);
-    const evaluator = new MoorlineProcess(["run", "--config", configPath, "--only", "evaluator"], folder);
+    const evaluator = new CliChild(["run", "--config", configPath, "--only", "evaluator"], { cwd: folder });
     const producer = startProducer(
       await confluentPython(),
       kafka.bootstrap,
@@ -83,7 +82,7 @@ export async function chaosRun(options: ChaosOptions): Promise<ChaosResult> {
     await sleep(2_000);
     const { counted, panes, differences } = await compareWithProduced(storePath, produced, options);
     await evaluator.end("SIGINT");
-    const audit = await moorlineCommand(["audit", "--config", configPath, "--format", "json"], folder);
+    const audit = await runCli(["audit", "--config", configPath, "--format", "json"], { cwd: folder });
     return {
       produced: options.events,
       inTopic,
@@ -206,7 +205,7 @@ async function disturb(
 ): Promise<{ kills: number; brokerRestarts: number }> {
   const random = seeded(options.seed);
   const start = () =>
-    new MoorlineProcess(["run", "--config", place.configPath, "--only", "collector"], place.folder);
+    new CliChild(["run", "--config", place.configPath, "--only", "collector"], { cwd: place.folder });
   let collector = start();
   let kills = 0;
   let brokerRestarts = 0;
@@ -267,11 +266,7 @@ async function sumOfOffsets(storePath: string): Promise<number> {
   }
 }
 
-async function untilCaughtUp(
-  storePath: string,
-  collector: MoorlineProcess,
-  options: ChaosOptions,
-): Promise<void> {
+async function untilCaughtUp(storePath: string, collector: CliChild, options: ChaosOptions): Promise<void> {
   const deadline = Date.now() + 180_000;
   for (;;) {
     const read = await sumOfOffsets(storePath);

@@ -43,8 +43,8 @@ describe(`invariant 1 and 2 under kills and restarts (seed ${SEED})`, () => {
   });
 
   it("audit is clean", () => {
-    expect(JSON.parse(result.audit.stdout)).toMatchObject({ clean: true, findings: [] });
-    expect(result.audit.exitCode).toBe(0);
+    expect(JSON.parse(result.audit.out)).toMatchObject({ clean: true, findings: [] });
+    expect(result.audit.status).toBe(0);
   });
 
   it.each(FAULTS.map((fault) => fault.name))("audit fails on a store with %s", (name) => {

@@ -1,7 +1,7 @@
 import { copyFile, readFile, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import { DatabaseSync } from "@photostructure/sqlite";
-import { moorlineCommand } from "./moorline-process.js";
+import { runCli } from "../real-parts/index.js";
 
 export interface Fault {
   readonly name: string;
@@ -46,16 +46,16 @@ export async function auditOfDamagedCopies(
     await copyFile(run.storePath, copy);
     await writeFile(copyConfig, config.replace(run.storePath, copy));
     damage(copy, fault);
-    const audit = await moorlineCommand(["audit", "--config", copyConfig, "--format", "json"], run.folder);
-    const report = JSON.parse(audit.stdout) as { clean: boolean; findings: readonly { sentence: string }[] };
+    const audit = await runCli(["audit", "--config", copyConfig, "--format", "json"], { cwd: run.folder });
+    const report = JSON.parse(audit.out) as { clean: boolean; findings: readonly { sentence: string }[] };
     found.push({
       name: fault.name,
-      found: audit.exitCode !== 0 && !report.clean,
-      exitCode: audit.exitCode,
+      found: audit.status !== 0 && !report.clean,
+      exitCode: audit.status,
       firstFinding: report.findings[0]?.sentence ?? "",
     });
     log(
-      `${fault.name}: audit exits with ${audit.exitCode}: ${report.findings[0]?.sentence ?? "nothing found"}`,
+      `${fault.name}: audit exits with ${audit.status}: ${report.findings[0]?.sentence ?? "nothing found"}`,
     );
   }
   return found;

@@ -17,8 +17,8 @@ const result = await chaosRun({
 });
 const faults = await auditOfDamagedCopies(result, log);
 const { storePath, configPath, folder, audit, ...figures } = result;
-const exact = result.differences.length === 0 && result.counted === result.produced && audit.exitCode === 0;
+const exact = result.differences.length === 0 && result.counted === result.produced && audit.status === 0;
 process.stdout.write(
-  `${JSON.stringify({ measure: "chaos", seed, ...figures, auditClean: audit.exitCode === 0, faults, exact, node: process.version })}\n`,
+  `${JSON.stringify({ measure: "chaos", seed, ...figures, auditClean: audit.status === 0, faults, exact, node: process.version })}\n`,
 );
 process.exitCode = exact && faults.every((fault) => fault.found) ? 0 : 1;

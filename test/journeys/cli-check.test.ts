@@ -3,8 +3,7 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { Kafka, logLevel } from "kafkajs";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { type RunningKafka, startKafka } from "../real-parts/index.js";
-import { runCli } from "./cli-child.js";
+import { type RunningKafka, runCli, startKafka } from "../real-parts/index.js";
 
 // `moorline check` against a real broker: what is there, what is missing, and what to do.
 

@@ -2,8 +2,7 @@ import { mkdtempSync, rmSync, writeFileSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { afterAll, describe, expect, it } from "vitest";
-import { freePort } from "../real-parts/index.js";
-import { runCli } from "./cli-child.js";
+import { freePort, runCli } from "../real-parts/index.js";
 
 // The built command as a person calls it: every error is one clear sentence with what to do, never a stack trace, with the exit status of its kind.
 

@@ -3,8 +3,7 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { openStore } from "@moorline/store";
 import { afterAll, describe, expect, it } from "vitest";
-import { freePort } from "../real-parts/index.js";
-import { CliChild, runCli } from "./cli-child.js";
+import { CliChild, freePort, runCli } from "../real-parts/index.js";
 
 // The demo as anyone starts it: built command, own folder, own port. Two minutes of the clock, for that is how long the drift may take.
 

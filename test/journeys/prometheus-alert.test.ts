@@ -6,11 +6,12 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { setTimeout as sleep } from "node:timers/promises";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { MoorlineProcess, moorlineCommand } from "../chaos/moorline-process.js";
 import {
+  CliChild,
   freePort,
   promtool,
   type RunningServer,
+  runCli,
   startAlertmanager,
   startPrometheus,
 } from "../real-parts/index.js";
@@ -31,7 +32,7 @@ const ALERT_WITHIN_MS = 170_000;
 const WATCHED_ON_MS = 20_000;
 
 let folder: string;
-let demo: MoorlineProcess;
+let demo: CliChild;
 let prometheus: RunningServer;
 let alertmanager: RunningServer;
 let receiver: Server;
@@ -45,19 +46,18 @@ beforeAll(async () => {
   base = `http://127.0.0.1:${port}`;
   env["MOORLINE_DEMO_DIR"] = join(folder, "demo");
   env["MOORLINE_GATEWAY_PORT"] = String(port);
-  demo = new MoorlineProcess(["run", "--demo"], folder, env);
+  demo = new CliChild(["run", "--demo"], { cwd: folder, env });
   await until("the demo answers", 60_000, async () => (await fetch(`${base}/livez`)).ok);
   receiver = await webhook();
   alertmanager = await startAlertmanager({
     configText: alertmanagerConfig((receiver.address() as AddressInfo).port),
   });
-  const rules = await moorlineCommand(
-    ["rules", "--config", join(folder, "demo", "moorline.yaml")],
-    folder,
+  const rules = await runCli(["rules", "--config", join(folder, "demo", "moorline.yaml")], {
+    cwd: folder,
     env,
-  );
-  expect(rules.exitCode, rules.stderr).toBe(0);
-  prometheus = await startPrometheus({ configText: prometheusConfig(port), rulesText: rules.stdout });
+  });
+  expect(rules.status, rules.err).toBe(0);
+  prometheus = await startPrometheus({ configText: prometheusConfig(port), rulesText: rules.out });
 }, 120_000);
 
 afterAll(async () => {

@@ -1,4 +1,5 @@
 export { CHROMIUM_FLAGS, chromiumPath } from "./chromium-path.js";
+export { CliChild, type CliOptions, type CliResult, runCli } from "./cli-child.js";
 export { confluentPython } from "./confluent-python.js";
 export { freePort } from "./free-port.js";
 export { type BrokerAddresses, brokerProperties } from "./kafka/broker-properties.js";

@@ -213,7 +213,8 @@ export interface StreamProgress {
 export interface EvaluationCommit {
   readonly stream: string;
   readonly lease: Lease;
-  readonly progress: StreamProgress;
+  /** Null leaves it as it is, none where there is none. */
+  readonly progress: StreamProgress | null;
   readonly rollups: readonly RollupRow[];
   /** Ids of segments that the rollups now contain: no longer pending. */
   readonly settledSegments: readonly number[];

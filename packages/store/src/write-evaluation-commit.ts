@@ -16,7 +16,7 @@ export async function writeEvaluationCommit(
 ): Promise<"committed" | "fenced"> {
   checkBatchNames(batch);
   if (!(await holdLease(transaction, batch.lease))) return "fenced";
-  await writeProgress(transaction, batch.stream, batch.progress);
+  if (batch.progress !== null) await writeProgress(transaction, batch.stream, batch.progress);
   await writeRollups(transaction, batch.stream, batch.rollups);
   for (const ids of inChunks(batch.settledSegments, 1)) {
     await transaction.deleteFrom("segment_pending").where("segment_id", "in", ids).execute();

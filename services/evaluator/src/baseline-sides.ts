@@ -24,13 +24,18 @@ export class BaselineSides {
     return this.#id;
   }
 
-  /** Looks which baseline is active now. */
-  async refresh(): Promise<void> {
+  /** Looks which baseline is active now; `rest` gives other work its turn while it is decoded. */
+  async refresh(rest: () => Promise<void>): Promise<void> {
     const active = await this.#store.baselines.active(this.#stream);
     const id = active?.baselineId ?? null;
     if (id === this.#id) return;
     const parts = id === null ? [] : await this.#store.baselines.parts(id, { block: -1 });
-    this.#sides = new Map(parts.map((part) => [sideKey(part.slice, part.feature), sideOfPart(part, id!)]));
+    const sides = new Map<string, NumericSide>();
+    for (const part of parts) {
+      sides.set(sideKey(part.slice, part.feature), sideOfPart(part, id!));
+      await rest();
+    }
+    this.#sides = sides;
     this.#id = id;
   }
 

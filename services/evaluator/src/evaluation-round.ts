@@ -37,7 +37,7 @@ export async function closePane(input: RoundInput, paneStartMs: number): Promise
   const { store, stream } = input;
   const closedThroughMs = paneStartMs + stream.paneMs;
   const fresh = new FreshRollups(store);
-  const rolled = await rollPane(store, stream.name, paneStartMs, false);
+  const rolled = await rollPane(store, stream.name, paneStartMs, false, input.rest);
   for (const row of rolled.rollups) fresh.add(row);
   for (const slice of rolled.slices) input.slices.add(slice);
   await rollLong(stream, [...input.slices], paneStartMs, closedThroughMs, fresh, input.rest);
@@ -52,14 +52,20 @@ export async function closePane(input: RoundInput, paneStartMs: number): Promise
         const before = input.states.get({ horizon: window.horizon, slice, feature });
         const judged = judgeWindow(stream, at, range, input.baselines, before, input.rule, input.nowMs);
         if (judged.evaluation !== null) evaluations.push(judged.evaluation);
-        states.push(judged.state);
-        const entry = stateChange(before, judged.state, input.nowMs, judged.figures);
+        const state = before?.state === "silent" ? stillSilent(before, judged.state) : judged.state;
+        states.push(state);
+        const entry = stateChange(before, state, input.nowMs, judged.figures);
         if (entry !== null) logbook.push(entry);
         await input.rest();
       }
     }
   }
   return { rollups: fresh, settledSegments: rolled.segmentIds, evaluations, states, logbook };
+}
+
+/** Windows of what came before a silence are decided and remembered, but end no silence: only events do. */
+function stillSilent(before: FeatureStateRow, decided: FeatureStateRow): FeatureStateRow {
+  return { ...decided, state: "silent", sinceMs: before.sinceMs, sentence: before.sentence };
 }
 
 /**
@@ -73,7 +79,7 @@ export async function amendPane(
 ): Promise<Round> {
   const { store, stream } = input;
   const fresh = new FreshRollups(store);
-  const rolled = await rollPane(store, stream.name, paneStartMs, true);
+  const rolled = await rollPane(store, stream.name, paneStartMs, true, input.rest);
   for (const row of rolled.rollups) fresh.add(row);
   for (const slice of rolled.slices) input.slices.add(slice);
   await rollLong(stream, rolled.slices, paneStartMs, closedThroughMs, fresh, input.rest);

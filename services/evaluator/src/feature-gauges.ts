@@ -7,9 +7,15 @@ const STATES = ["holding", "straining", "adrift", "thin", "silent"] as const;
 export function hideFeature(metrics: Metrics, row: FeatureStateRow): void {
   const labels = labelsOf(row);
   for (const state of STATES) metrics.featureState.remove({ ...labels, state });
+  metrics.featureStateSince.remove(labels);
+  hideFigures(metrics, row);
+}
+
+/** Takes the figures of the last comparison away, not the state. */
+export function hideFigures(metrics: Metrics, row: FeatureStateRow): void {
+  const labels = labelsOf(row);
   for (const tail of ["lower", "upper"] as const) metrics.tailExceedanceRatio.remove({ ...labels, tail });
   const others = [
-    metrics.featureStateSince,
     metrics.windowValues,
     metrics.ksDistance,
     metrics.wassersteinScaled,

@@ -27,13 +27,14 @@ export interface PanePlan {
  *
  * Edges  A silence of more than two longest horizons is not walked through to its end: closing goes on to the end of the day that it began in,
  *        so that its hours and the day get their rollups, and from there one longest horizon before the next pane that has events, so that every
- *        window which holds an event is evaluated.
+ *        window which holds an event is evaluated. Panes that were made longer by the config go on at the next whole one.
  */
 export function panePlan(input: PanePlanInput): PanePlan {
   const { pending, paneMs, mostPanes } = input;
   const first = pending[0]?.paneStartMs;
-  const closedThroughMs = input.closedThroughMs ?? first;
-  if (closedThroughMs === undefined) return { closing: [], late: [], more: false };
+  const reachedMs = input.closedThroughMs ?? first;
+  if (reachedMs === undefined) return { closing: [], late: [], more: false };
+  const closedThroughMs = Math.ceil(reachedMs / paneMs) * paneMs;
   const late = pending.map((pane) => pane.paneStartMs).filter((start) => start < closedThroughMs);
   const { startMs, endMs } = closingRange(input, closedThroughMs);
   const closing: number[] = [];

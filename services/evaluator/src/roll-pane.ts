@@ -15,6 +15,7 @@ export async function rollPane(
   stream: string,
   paneStartMs: number,
   amended: boolean,
+  rest: () => Promise<void>,
 ): Promise<RolledPane> {
   const slices = await store.panes.segmentSlices(stream, paneStartMs);
   const rollups: RollupRow[] = [];
@@ -34,6 +35,7 @@ export async function rollPane(
     }
     for (const [feature, bytes] of parts) {
       rollups.push(rollupOf("pane", paneStartMs, slice, feature, bytes, amended));
+      await rest();
     }
   }
   return { rollups, segmentIds, slices, events };

@@ -1,3 +1,4 @@
+import { randomUUID } from "node:crypto";
 import { hostname } from "node:os";
 import { setTimeout as sleep } from "node:timers/promises";
 import type { MoorlineConfig } from "@moorline/config";
@@ -12,11 +13,13 @@ export interface EvaluatorOptions {
   readonly telemetry: Telemetry;
   /** The wall clock, for tests. */
   readonly nowMs?: () => number;
-  /** Name of this evaluator in the leases; default host name and process id. */
+  /** Name of this evaluator in the leases, no other's; default host name, process id and a random part: containers share the first two. */
   readonly instance?: string;
 }
 
 const LONGEST_WAIT_MS = 15_000;
+/** A partition that changed hands has its first checkpoint after one of these times, a rebalance and a slow one allowed for. */
+const SETTLE_CHECKPOINTS = 6;
 
 /**
  * Evaluates every stream of the config until it is stopped. A store that is away is tried again with growing waits and shown in readiness;
@@ -24,11 +27,12 @@ const LONGEST_WAIT_MS = 15_000;
  */
 export async function startEvaluator(options: EvaluatorOptions): Promise<RunningService> {
   const { config, store, telemetry } = options;
-  const owner = options.instance ?? `${hostname()}-${process.pid}`;
+  const owner = options.instance ?? `${hostname()}-${process.pid}-${randomUUID().slice(0, 8)}`;
   const nowMs = options.nowMs ?? Date.now;
+  const settleMs = SETTLE_CHECKPOINTS * config.collector.checkpointMs;
   const stopping = new AbortController();
   const evaluators = config.streams.map(
-    (stream) => new StreamEvaluator({ stream, store, telemetry, owner, nowMs }),
+    (stream) => new StreamEvaluator({ stream, store, telemetry, owner, settleMs, nowMs }),
   );
   const loops = evaluators.map((evaluator, index) =>
     evaluateUntilStopped(evaluator, config.streams[index]!.name, options, stopping.signal),

@@ -2,8 +2,8 @@ import { setImmediate as nextTurn } from "node:timers/promises";
 import type { StreamConfig } from "@moorline/config";
 import { DEFAULT_DECISION_RULE, type DecisionRule } from "@moorline/stats";
 import type {
+  EvaluationCommit,
   FeatureStateRow,
-  Lease,
   LogbookWrite,
   PartitionRow,
   Store,
@@ -11,19 +11,19 @@ import type {
 } from "@moorline/store";
 import type { Telemetry } from "@moorline/telemetry";
 import { BaselineSides } from "./baseline-sides.js";
+import { ClaimsSeen } from "./claims-seen.js";
 import { amendPane, closePane, type Round, type RoundInput } from "./evaluation-round.js";
-import { hideFeature, showFigures, showState } from "./feature-gauges.js";
+import { LeaseKeeper, LeaseLost } from "./lease-keeper.js";
 import { panePlan } from "./pane-plan.js";
 import { silenceChange } from "./silence.js";
 import { StateBook } from "./state-book.js";
+import { StreamGauges } from "./stream-gauges.js";
 import { watermark } from "./watermark.js";
 
-/** Panes closed before the tick looks again at what is pending and renews its lease. */
+/** Panes closed before the tick looks again at what is pending. */
 const MOST_PANES_A_TICK = 60;
-/** Long enough for the longest round; a leader that dies is followed after this. */
-const LEASE_MS = 30_000;
-/** Features judged before other work of the process gets its turn. */
-const JUDGED_AT_A_STRETCH = 50;
+/** Sketches merged or judged before other work of the process gets its turn. */
+const WORKED_AT_A_STRETCH = 50;
 
 const QUIET: ReadonlySet<string | undefined> = new Set(["holding", "thin"]);
 
@@ -32,6 +32,8 @@ export interface StreamEvaluatorParts {
   readonly store: Store;
   readonly telemetry: Telemetry;
   readonly owner: string;
+  /** How long a partition that changed hands holds the watermark back before its first event: a few checkpoints. */
+  readonly settleMs: number;
   readonly nowMs: () => number;
 }
 
@@ -40,25 +42,25 @@ export class StreamEvaluator {
   readonly #parts: StreamEvaluatorParts;
   readonly #rule: DecisionRule;
   readonly #baselines: BaselineSides;
+  readonly #lease: LeaseKeeper;
+  readonly #gauges: StreamGauges;
+  readonly #claims = new ClaimsSeen();
   readonly #startedMs: number;
-  /** Wall clock of the last evaluated window by horizon; the start, before the first. */
-  readonly #evaluatedAtMs: Map<string, number>;
-  #lease: Lease | null = null;
   #states = new StateBook([]);
   #slices = new Set<string>();
   #progress: StreamProgress | null = null;
-  #judged = 0;
-  #lastRenewedMs = 0;
+  #worked = 0;
   #stopping = false;
 
   constructor(parts: StreamEvaluatorParts) {
-    const { stream, store, nowMs } = parts;
+    const { stream, store, telemetry, owner, nowMs } = parts;
     this.#parts = parts;
     const { persistence, releaseAfter, bodyFloor, tailFactor } = stream.decision;
     this.#rule = { ...DEFAULT_DECISION_RULE, persistence, releaseAfter, bodyFloor, tailFactor };
     this.#baselines = new BaselineSides(store, stream.name);
+    this.#lease = new LeaseKeeper(store, `evaluate ${stream.name}`, owner, nowMs);
+    this.#gauges = new StreamGauges(telemetry.metrics, stream);
     this.#startedMs = nowMs();
-    this.#evaluatedAtMs = new Map(stream.horizons.map((horizon) => [horizon.label, this.#startedMs]));
   }
 
   /** Ends the round at hand after the pane that it is at. */
@@ -66,9 +68,8 @@ export class StreamEvaluator {
     this.#stopping = true;
   }
 
-  async release(): Promise<void> {
-    if (this.#lease !== null) await this.#parts.store.evaluations.releaseLease(this.#lease);
-    this.#lease = null;
+  release(): Promise<void> {
+    return this.#lease.release();
   }
 
   /** Closes what can be closed. True when there is more to do at once. */
@@ -77,79 +78,77 @@ export class StreamEvaluator {
       return await this.#tick();
     } catch (error) {
       // Whether the last write came through may not be known: what is in memory is read again before the next one.
-      this.#lease = null;
+      this.#lease.forget();
+      if (error instanceof LeaseLost) return false;
       throw error;
+    } finally {
+      this.#gauges.ages(this.#parts.nowMs());
     }
   }
 
   async #tick(): Promise<boolean> {
-    const { store, stream, nowMs } = this.#parts;
+    const { store, stream } = this.#parts;
     if (!(await this.#lead())) return false;
     const partitions = await store.ingest.partitions(stream.name);
-    await this.#baselines.refresh();
-    const pending = await store.panes.pendingPanes(stream.name);
+    await this.#baselines.refresh(() => this.#rest());
+    if (!(await this.#noticeSilence(partitions))) return false;
+    const { watermarkMs, nothingActive } = this.#watermark(partitions);
+    if (watermarkMs === null) return false;
+    const plan = panePlan({
+      pending: await store.panes.pendingPanes(stream.name),
+      closedThroughMs: this.#progress?.closedThroughMs ?? null,
+      watermarkMs,
+      paneMs: stream.paneMs,
+      longestHorizonMs: stream.horizons.at(-1)!.ms,
+      nothingActive,
+      mostPanes: MOST_PANES_A_TICK,
+    });
+    return (await this.#work(plan.closing, plan.late, watermarkMs)) && plan.more;
+  }
+
+  /** The stream's watermark; it never goes back, not across a restart either. */
+  #watermark(partitions: readonly PartitionRow[]) {
+    const { stream, settleMs, nowMs } = this.#parts;
     const mark = watermark({
       partitions,
+      settling: this.#claims.settling(partitions, nowMs(), Math.min(settleMs, stream.idleAfterMs)),
       latenessMs: stream.latenessMs,
       idleAfterMs: stream.idleAfterMs,
       nowMs: nowMs(),
     });
-    let more = false;
-    if (mark !== null) {
-      const watermarkMs = Math.max(mark, this.#progress?.watermarkMs ?? mark);
-      const plan = panePlan({
-        pending,
-        closedThroughMs: this.#progress?.closedThroughMs ?? null,
-        watermarkMs,
-        paneMs: stream.paneMs,
-        longestHorizonMs: stream.horizons.at(-1)!.ms,
-        nothingActive: !this.#anyActive(partitions),
-        mostPanes: MOST_PANES_A_TICK,
-      });
-      more = (await this.#work(plan.closing, plan.late, watermarkMs)) && plan.more;
-    }
-    await this.#noticeSilence(partitions);
-    this.#showAges();
-    return more;
-  }
-
-  #anyActive(partitions: readonly PartitionRow[]): boolean {
-    const { stream, nowMs } = this.#parts;
-    return partitions.some(
-      (row) =>
-        row.status === "reading" &&
-        row.lastEventAtMs !== null &&
-        nowMs() - row.lastEventAtMs <= stream.idleAfterMs,
-    );
+    const reachedMs = this.#progress?.watermarkMs ?? null;
+    if (mark.watermarkMs === null) return { ...mark, watermarkMs: reachedMs };
+    const watermarkMs = Math.max(mark.watermarkMs, reachedMs ?? mark.watermarkMs);
+    this.#gauges.watermark(watermarkMs);
+    return { ...mark, watermarkMs };
   }
 
   /** True while this process leads the stream; what another leader may have written is read when it becomes the leader. */
   async #lead(): Promise<boolean> {
-    const { store, stream, owner, nowMs, telemetry } = this.#parts;
-    const lease = await store.evaluations.acquireLease(`evaluate ${stream.name}`, owner, nowMs(), LEASE_MS);
-    this.#lastRenewedMs = nowMs();
-    if (lease === null) {
-      this.#lease = null;
-      this.#hideAll();
-      return false;
-    }
-    if (this.#lease?.token === lease.token) return true;
-    this.#lease = lease;
-    this.#states = new StateBook(await store.evaluations.states(stream.name));
+    const { store, stream, telemetry } = this.#parts;
+    const taken = await this.#lease.acquire();
+    if (taken === "another-leads") this.#gauges.hide();
+    if (taken !== "taken") return taken === "kept";
+    const states = await store.evaluations.states(stream.name);
+    this.#states = new StateBook(states.filter((row) => this.#isConfigured(row)));
     this.#slices = new Set(["all", ...(await store.panes.slices(stream.name))]);
     this.#progress = await store.evaluations.progress(stream.name);
     await this.#showStored();
-    telemetry.logger.info({ stream: stream.name, token: lease.token }, "evaluating this stream");
+    telemetry.logger.info({ stream: stream.name, token: this.#lease.lease!.token }, "evaluating this stream");
     return true;
   }
 
-  /** Late panes first: what closes now reads their rollups. False when another leader took over. */
+  /** A feature or horizon that left the config keeps its last state in the store, but nothing will ever end an alert of it. */
+  #isConfigured({ feature, horizon }: FeatureStateRow): boolean {
+    const { features, horizons } = this.#parts.stream;
+    return features.some(({ name }) => name === feature) && horizons.some(({ label }) => label === horizon);
+  }
+
+  /** Late panes first: what closes now reads their rollups. False when another leader took over or this process ends. */
   async #work(closing: readonly number[], late: readonly number[], watermarkMs: number): Promise<boolean> {
     const { telemetry, stream, nowMs } = this.#parts;
-    const end =
-      closing.length + late.length > 0
-        ? telemetry.metrics.evaluationDuration.startTimer({ stream: stream.name })
-        : null;
+    if (closing.length + late.length === 0) return true;
+    const end = telemetry.metrics.evaluationDuration.startTimer({ stream: stream.name });
     for (const paneStartMs of late) {
       const closedThroughMs = this.#progress!.closedThroughMs;
       const round = await amendPane(this.#roundInput(), paneStartMs, closedThroughMs);
@@ -160,8 +159,8 @@ export class StreamEvaluator {
       const closedThroughMs = paneStartMs + stream.paneMs;
       if (!(await this.#write(round, { watermarkMs, closedThroughMs, evaluatedAtMs: nowMs() }))) return false;
     }
-    end?.();
-    return !this.#stopping;
+    end();
+    return true;
   }
 
   #roundInput(): RoundInput {
@@ -179,44 +178,32 @@ export class StreamEvaluator {
   }
 
   async #rest(): Promise<void> {
-    this.#judged += 1;
-    if (this.#judged % JUDGED_AT_A_STRETCH === 0) await nextTurn();
+    this.#worked += 1;
+    if (this.#worked % WORKED_AT_A_STRETCH !== 0) return;
+    await nextTurn();
+    await this.#lease.renewIfDue();
   }
 
   async #write(round: Round, progress: StreamProgress): Promise<boolean> {
-    const { store, stream, owner, nowMs } = this.#parts;
-    if (nowMs() - this.#lastRenewedMs > LEASE_MS / 3) {
-      await store.evaluations.acquireLease(this.#lease!.name, owner, nowMs(), LEASE_MS);
-      this.#lastRenewedMs = nowMs();
-    }
-    const outcome = await store.evaluations.commit({
-      stream: stream.name,
-      lease: this.#lease!,
-      progress,
-      rollups: round.rollups.rows(),
-      settledSegments: round.settledSegments,
-      evaluations: round.evaluations,
-      states: round.states,
-      logbook: round.logbook,
-    });
-    if (outcome === "fenced") {
-      this.#lease = null;
-      return false;
-    }
+    await this.#lease.renewIfDue();
+    if (!(await this.#commit({ ...round, rollups: round.rollups.rows(), progress }))) return false;
     this.#progress = progress;
-    this.#show(round);
+    this.#gauges.closed(round.states, round.evaluations, this.#parts.nowMs());
     return !this.#stopping;
   }
 
-  #show(round: Round): void {
-    const { telemetry, nowMs } = this.#parts;
-    for (const row of round.states) {
-      this.#states.set(row);
-      showState(telemetry.metrics, row);
-      this.#evaluatedAtMs.set(row.horizon, nowMs());
+  /** False when the lease is another's by now: nothing was written. */
+  async #commit(batch: Omit<EvaluationCommit, "stream" | "lease">): Promise<boolean> {
+    const { store, stream } = this.#parts;
+    const lease = this.#lease.lease!;
+    const outcome = await store.evaluations.commit({ ...batch, stream: stream.name, lease });
+    if (outcome === "fenced") {
+      this.#lease.forget();
+      return false;
     }
-    for (const row of round.evaluations) showFigures(telemetry.metrics, row);
-    this.#logChanges(round.logbook);
+    for (const row of batch.states) this.#states.set(row);
+    this.#logChanges(batch.logbook);
+    return true;
   }
 
   #logChanges(entries: readonly LogbookWrite[]): void {
@@ -230,39 +217,33 @@ export class StreamEvaluator {
     }
   }
 
-  /** A process that does not lead says nothing of the stream's features: what it knows is old. */
-  #hideAll(): void {
-    const { telemetry, stream } = this.#parts;
-    for (const row of this.#states.all()) hideFeature(telemetry.metrics, row);
-    for (const { label: horizon } of stream.horizons)
-      telemetry.metrics.evaluationAge.remove({ stream: stream.name, horizon });
-    telemetry.metrics.watermarkAge.remove({ stream: stream.name });
-    this.#states = new StateBook([]);
-  }
-
   /** States and last figures as the store has them: a restart must not blank an alert. */
   async #showStored(): Promise<void> {
-    const { store, stream, telemetry } = this.#parts;
-    for (const row of this.#states.all()) showState(telemetry.metrics, row);
-    for (const horizon of stream.horizons) {
-      const ends = this.#states
-        .all()
-        .flatMap((row) => (row.horizon === horizon.label ? [row.windowEndMs] : []));
+    const { store, stream, nowMs } = this.#parts;
+    const states = this.#states.all();
+    this.#gauges.states(states);
+    const evaluatedAtMs = new Map<string, number>();
+    for (const { label: horizon } of stream.horizons) {
+      const ends = states.flatMap((row) => (row.horizon === horizon ? [row.windowEndMs] : []));
       if (ends.length === 0) continue;
       const last = ends.reduce((a, b) => Math.max(a, b));
-      const rows = await store.evaluations.evaluations({
-        stream: stream.name,
-        horizon: horizon.label,
-        fromMs: last - 1,
-        toMs: last,
-      });
-      for (const row of rows) showFigures(telemetry.metrics, row);
+      const query = { stream: stream.name, horizon, fromMs: last - 1, toMs: last };
+      const rows = await store.evaluations.evaluations(query);
+      this.#gauges.figures(rows.filter((row) => this.#states.get(row) !== undefined));
+      // Amended ones were made again later.
+      if (rows.length > 0)
+        evaluatedAtMs.set(
+          horizon,
+          rows.reduce((least, row) => Math.min(least, row.evaluatedAtMs), nowMs()),
+        );
     }
+    this.#gauges.begin(nowMs(), evaluatedAtMs);
+    if (this.#progress !== null) this.#gauges.watermark(this.#progress.watermarkMs);
   }
 
-  /** No events of the whole stream for too long: absence of data is never shown as absence of drift. */
-  async #noticeSilence(partitions: readonly PartitionRow[]): Promise<void> {
-    const { store, stream, nowMs } = this.#parts;
+  /** No events of the whole stream for too long: absence of data is never shown as absence of drift. False when another leader took over. */
+  async #noticeSilence(partitions: readonly PartitionRow[]): Promise<boolean> {
+    const { stream, nowMs } = this.#parts;
     const change = silenceChange({
       stream,
       partitions,
@@ -271,35 +252,10 @@ export class StreamEvaluator {
       states: this.#states.all(),
       slices: [...this.#slices],
     });
-    if (change === null) return;
-    const progress = this.#progress ?? { watermarkMs: 0, closedThroughMs: 0, evaluatedAtMs: nowMs() };
-    const states: readonly FeatureStateRow[] = change.states;
-    const outcome = await store.evaluations.commit({
-      stream: stream.name,
-      lease: this.#lease!,
-      progress: { ...progress, evaluatedAtMs: nowMs() },
-      rollups: [],
-      settledSegments: [],
-      evaluations: [],
-      states,
-      logbook: change.logbook,
-    });
-    if (outcome === "fenced") return;
-    for (const row of states) {
-      this.#states.set(row);
-      showState(this.#parts.telemetry.metrics, row);
-    }
-    this.#logChanges(change.logbook);
-  }
-
-  #showAges(): void {
-    const { telemetry, stream, nowMs } = this.#parts;
-    const now = nowMs();
-    for (const [horizon, atMs] of this.#evaluatedAtMs) {
-      telemetry.metrics.evaluationAge.set({ stream: stream.name, horizon }, (now - atMs) / 1_000);
-    }
-    if (this.#progress !== null && this.#progress.watermarkMs > 0) {
-      telemetry.metrics.watermarkAge.set({ stream: stream.name }, (now - this.#progress.watermarkMs) / 1_000);
-    }
+    if (change === null) return true;
+    const nothing = { progress: this.#progress, rollups: [], settledSegments: [], evaluations: [] };
+    if (!(await this.#commit({ ...nothing, ...change }))) return false;
+    this.#gauges.states(change.states);
+    return true;
   }
 }

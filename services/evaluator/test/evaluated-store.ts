@@ -14,6 +14,8 @@ export const BASELINE_ID = "a".repeat(64);
 /** An hour's start, so that minutes after it are easy to read. */
 export const START = Date.UTC(2026, 0, 5, 10);
 
+export const SETTLE_MS = 30_000;
+
 /** Training: 0 to 999, each ten times, so that 1 % of it lies above 989. */
 export const TRAINING = Array.from({ length: 10_000 }, (_, i) => i % 1_000);
 
@@ -110,6 +112,7 @@ streams:
       store,
       telemetry,
       owner,
+      settleMs: SETTLE_MS,
       nowMs: () => this.nowMs,
     });
   }

@@ -1,6 +1,7 @@
 import type { StreamConfig } from "@moorline/config";
 import type { FeatureStateRow, PartitionRow, PendingPane } from "@moorline/store";
 import { describe, expect, it } from "vitest";
+import { ClaimsSeen } from "../src/claims-seen.js";
 import { dueWindows } from "../src/due-windows.js";
 import { type PanePlanInput, panePlan } from "../src/pane-plan.js";
 import { silenceChange } from "../src/silence.js";
@@ -31,11 +32,21 @@ const partition = (changes: Partial<PartitionRow>): PartitionRow => ({
 });
 
 describe("watermark", () => {
-  const of = (partitions: readonly PartitionRow[], nowMs = 0) =>
-    watermark({ partitions, latenessMs: 2 * MINUTE, idleAfterMs: 5 * MINUTE, nowMs });
+  const of = (partitions: readonly PartitionRow[], settling: readonly PartitionRow[] = []) =>
+    watermark({
+      partitions,
+      settling: new Set(settling),
+      latenessMs: 2 * MINUTE,
+      idleAfterMs: 5 * MINUTE,
+      nowMs: 0,
+    });
+  const active = (watermarkMs: number | null) => ({ watermarkMs, nothingActive: false });
+  const inactive = (watermarkMs: number | null) => ({ watermarkMs, nothingActive: true });
 
   it("is the slowest active partition, less the lateness", () => {
-    expect(of([partition({}), partition({ partition: 1, maxEventMs: 90 * MINUTE })])).toBe(88 * MINUTE);
+    expect(of([partition({}), partition({ partition: 1, maxEventMs: 90 * MINUTE })])).toEqual(
+      active(88 * MINUTE),
+    );
   });
 
   it.each([
@@ -44,15 +55,35 @@ describe("watermark", () => {
     ["halted", { status: "log-rewound" }],
     ["without an event so far", { maxEventMs: null, lastEventAtMs: null }],
   ] as const)("is not held back by a partition that is %s", (_, changes) => {
-    expect(of([partition({}), partition({ partition: 1, maxEventMs: 5 * MINUTE, ...changes })])).toBe(
-      98 * MINUTE,
+    expect(of([partition({}), partition({ partition: 1, maxEventMs: 5 * MINUTE, ...changes })])).toEqual(
+      active(98 * MINUTE),
     );
   });
 
   it("passes the last event when no partition is active, and is null before the first event", () => {
-    expect(of([partition({ status: "finished" })])).toBe(100 * MINUTE + 1);
-    expect(of([])).toBeNull();
-    expect(of([partition({ maxEventMs: null })])).toBeNull();
+    expect(of([partition({ status: "finished" })])).toEqual(inactive(100 * MINUTE + 1));
+    expect(of([])).toEqual(inactive(null));
+    expect(of([partition({ maxEventMs: null, lastEventAtMs: null })])).toEqual(inactive(null));
+  });
+
+  it("waits for the backlog of a partition that changed hands a moment ago, unless it is finished", () => {
+    const idle = partition({ partition: 1, maxEventMs: 5 * MINUTE, lastEventAtMs: -HOUR });
+    expect(of([partition({}), idle], [idle])).toEqual(active(3 * MINUTE));
+    const empty = partition({ partition: 1, maxEventMs: null, lastEventAtMs: null });
+    expect(of([partition({}), empty], [empty])).toEqual(active(null));
+    const finished = partition({ partition: 1, maxEventMs: 5 * MINUTE, status: "finished" });
+    expect(of([partition({}), finished], [finished])).toEqual(active(98 * MINUTE));
+  });
+});
+
+describe("ClaimsSeen", () => {
+  it("counts from when this process first saw the claim, anew for each owner epoch", () => {
+    const claims = new ClaimsSeen();
+    const settling = (row: PartitionRow, nowMs: number) => claims.settling([row], nowMs, 100).size;
+    const first = partition({});
+    expect([settling(first, 0), settling(first, 99), settling(first, 100)]).toEqual([1, 1, 0]);
+    const second = partition({ epoch: 2 });
+    expect([settling(second, 150), settling(second, 249), settling(second, 250)]).toEqual([1, 1, 0]);
   });
 });
 
@@ -210,7 +241,39 @@ describe("silenceChange", () => {
     const silent = at(12 * MINUTE, [partition({})])!.states;
     const back = [partition({ lastEventAtMs: 20 * MINUTE })];
     const resumed = at(21 * MINUTE, back, silent)!;
-    expect(resumed.logbook).toMatchObject([{ kind: "stream-resumed" }]);
+    expect(resumed.logbook).toMatchObject([{ kind: "stream-resumed", detail: { stillAdrift: 0 } }]);
+    expect(resumed.states.map((row) => row.state)).toEqual(["thin", "thin"]);
     expect(at(22 * MINUTE, back, resumed.states)).toBeNull();
+  });
+
+  it("a feature that was adrift before the silence still is after it, since the same time", () => {
+    const adrift = (feature: string, memory: object) =>
+      ({ stream: "s", horizon: "5m", slice: "all", feature, state: "adrift", sinceMs: 5, memory }) as never;
+    const before = [adrift("f", { state: "adrift", sinceMs: 5 }), adrift("g", { state: "holding" })];
+    const silent = at(12 * MINUTE, [partition({})], before)!.states;
+    const back = [partition({ lastEventAtMs: 20 * MINUTE })];
+    const resumed = at(21 * MINUTE, back, silent)!;
+    expect(resumed.states.map((row) => [row.state, row.sinceMs])).toEqual([
+      ["adrift", 5],
+      ["thin", 21 * MINUTE],
+    ]);
+    expect(resumed.logbook).toMatchObject([{ detail: { stillAdrift: 1 } }]);
+  });
+
+  it("takes up a slice that came in the silence without another entry, and a restart does not end the silence", () => {
+    const quiet = [partition({ lastEventAtMs: MINUTE })];
+    const silent = at(12 * MINUTE, quiet)!.states;
+    const more = silenceChange({
+      stream,
+      partitions: quiet,
+      startedMs: 0,
+      nowMs: 13 * MINUTE,
+      states: silent,
+      slices: ["all", "north"],
+    })!;
+    expect(more.states).toHaveLength(4);
+    expect(more.logbook).toEqual([]);
+    const restarted = { stream, partitions: quiet, startedMs: HOUR, states: silent, slices: ["all"] };
+    expect(silenceChange({ ...restarted, nowMs: HOUR + MINUTE })).toBeNull();
   });
 });

@@ -36,6 +36,11 @@ export class CliChild {
     return this.#child.exitCode === null && this.#child.signalCode === null;
   }
 
+  /** The end of what it wrote, for a failure message. */
+  get lastOutput(): string {
+    return (this.out + this.err).slice(-4_000);
+  }
+
   /** Resolves with what `find` gives as soon as it gives something; fails with what was written when it takes too long. */
   async until<T>(
     what: string,
@@ -64,11 +69,14 @@ export class CliChild {
   }
 }
 
+export interface CliResult {
+  readonly status: number | null;
+  readonly out: string;
+  readonly err: string;
+}
+
 /** Runs a command to its end. */
-export async function runCli(
-  args: readonly string[],
-  options: CliOptions,
-): Promise<{ readonly status: number | null; readonly out: string; readonly err: string }> {
+export async function runCli(args: readonly string[], options: CliOptions): Promise<CliResult> {
   const child = new CliChild(args, options);
   const status = await child.end();
   return { status, out: child.out, err: child.err };
