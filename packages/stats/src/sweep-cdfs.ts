@@ -1,5 +1,5 @@
 import type { CdfView } from "./cdf-view.js";
-import { positionBetween } from "./events-at.js";
+import { eventsBetween } from "./walk-union.js";
 
 /** What one pass over the union of two CDFs' knots yields. */
 export interface CdfSweep {
@@ -55,14 +55,6 @@ export function sweepCdfs(baseline: CdfView, production: CdfView): CdfSweep {
     if (onB) j += 1;
   }
   return { distance, at, sign, area: Math.min(area, Number.MAX_VALUE) };
-}
-
-/** Events up to x, which lies strictly between knots `next` − 1 and `next`. */
-function eventsBetween(view: CdfView, next: number, x: number): number {
-  if (next === 0) return 0;
-  const from = view.upTo[next - 1]!;
-  if (next === view.values.length || view.below[next] === from) return from;
-  return from + (view.below[next]! - from) * positionBetween(x, view.values[next - 1]!, view.values[next]!);
 }
 
 /** Area under the absolute value of a line from (x0, d0) to (x1, d1). Free of overflow but for an area that has none. */
