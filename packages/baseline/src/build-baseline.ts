@@ -8,23 +8,24 @@ import {
   type FrozenValues,
   MANIFEST_FORMAT,
 } from "./baseline-manifest.js";
+import { BLOCK_COUNTS, WHOLE } from "./baseline-parts.js";
 import { bindColumns } from "./bind-columns.js";
+import { BlockCounter } from "./block-counter.js";
+import { encodeBlockCounts } from "./block-counts-codec.js";
 import { type BlockPlan, planBlocks } from "./block-plan.js";
 import { contentId } from "./content-id.js";
 import { DuckdbSession } from "./files/duckdb-session.js";
-import { hashFiles, RowTable } from "./files/row-table.js";
+import { hashFiles, type RowBatch, RowTable } from "./files/row-table.js";
 import { findTrainingFiles } from "./files/training-files.js";
 import { atomValues, thresholdValues } from "./freeze-values.js";
 import { MOORLINE_VERSION } from "./moorline-version.js";
 import { OWN_THRESHOLDS } from "./own-thresholds.js";
 import type { OnProgress, ReadProgress } from "./read-progress.js";
 import { SketchGrid } from "./sketch-grid.js";
-import { planSlices, type SlicePlan } from "./slice-plan.js";
+import { membersOf, planSlices, type SlicePlan } from "./slice-plan.js";
 
 /** Compression of the whole: some 310 clusters, so that the baseline adds little to the error of a comparison. */
 export const BASELINE_COMPRESSION = 500;
-/** Compression of a block: exact up to 400 values, and small, for there are many. */
-export const BLOCK_COMPRESSION = 100;
 
 export interface BaselineRequest {
   readonly stream: StreamConfig;
@@ -75,10 +76,10 @@ async function sketchRows(
 ): Promise<BuiltBaseline> {
   const { stream } = request;
   const slices = await planSlices(table, stream.sliceLimit);
-  const plan = await planBlocks(table, slices.kept.length * stream.features.length);
+  const series = slices.kept.length * stream.features.length;
+  const plan = await planBlocks(table, series, stream.horizons[0]!.ms);
   const frozen = await freeze(table, slices, plan, request);
-  const parts: BaselinePart[] = [];
-  const whole = await count(table, slices, plan, frozen, request, (part) => parts.push(part));
+  const { whole, blocks } = await count(table, slices, plan, frozen, request);
   const rowsOf = (lists: readonly (readonly (readonly number[])[])[]): FrozenValues[] =>
     slices.kept.flatMap(({ slice }, s) =>
       stream.features.map(({ name }, f) => ({ slice, feature: name, values: lists[s]![f]! })),
@@ -101,7 +102,7 @@ async function sketchRows(
     thresholds: rowsOf(frozen.thresholds).filter(({ values }) => values.length > 0),
     atoms: rowsOf(frozen.atoms).filter(({ values }) => values.length > 0),
   };
-  parts.unshift(...partsOf(whole, slices, request, WHOLE));
+  const parts = [...partsOf(whole, slices, request), ...blockParts(blocks, plan, slices, request)];
   return { record: recordOf(request, manifest, parts), parts };
 }
 
@@ -119,9 +120,6 @@ export function recordOf(
     manifest,
   };
 }
-
-/** `BaselinePart.block` of the whole. */
-const WHOLE = -1;
 
 interface Frozen {
   readonly thresholds: readonly (readonly (readonly number[])[])[];
@@ -150,79 +148,82 @@ async function freeze(
   return { thresholds: each(thresholdValues), atoms: each(atomValues) };
 }
 
+interface Counted {
+  readonly whole: SketchGrid;
+  /** By slice, then feature; empty without blocks. */
+  readonly blocks: readonly (readonly BlockCounter[])[];
+}
+
 async function count(
   table: RowTable,
   slices: SlicePlan,
   plan: BlockPlan,
   frozen: Frozen,
   request: BaselineRequest,
-  keep: (part: BaselinePart) => void,
-): Promise<SketchGrid> {
-  const gridOf = (compression: number): SketchGrid =>
-    new SketchGrid(request.stream.features.length, slices, (s, f): SketchOptions => {
-      const values = frozen.thresholds[s]![f]!;
-      const knownAtoms = frozen.atoms[s]![f]!;
-      return {
-        compression,
-        knownAtoms,
-        ...(values.length > 0 && { thresholds: { id: OWN_THRESHOLDS, values } }),
-      };
-    });
-  const whole = gridOf(BASELINE_COMPRESSION);
+): Promise<Counted> {
+  const features = request.stream.features.length;
+  const whole = new SketchGrid(features, slices, (s, f): SketchOptions => {
+    const values = frozen.thresholds[s]![f]!;
+    const knownAtoms = frozen.atoms[s]![f]!;
+    const thresholds = values.length > 0 && { thresholds: { id: OWN_THRESHOLDS, values } };
+    return { compression: BASELINE_COMPRESSION, knownAtoms, ...thresholds };
+  });
+  const counters = plan.blocks.count === 0 ? [] : frozen.thresholds;
+  const blocks = counters.map((row) => row.map((values) => new BlockCounter(plan.blocks.count, values)));
   const report = reporter(table, "counting", request);
-  let block = { index: NO_BLOCK, grid: whole };
-  const closeBlock = () => {
-    if (block.index >= 0) for (const part of partsOf(block.grid, slices, request, block.index)) keep(part);
-  };
-  let row = 0;
+  let first = 0;
   for await (const batch of table.batches(plan.orderBy)) {
     whole.take(batch);
-    for (const { index, from, to } of runsOf(batch.rows, (i) =>
-      plan.blockOf(row + i, batch.timesMs[i] ?? null),
-    )) {
-      if (index !== block.index) {
-        closeBlock();
-        block = { index, grid: index >= 0 ? gridOf(BLOCK_COMPRESSION) : whole };
-      }
-      if (index >= 0) block.grid.take(batch, from, to);
-    }
-    row += batch.rows;
+    if (blocks.length > 0) countBlocks(batch, first, plan, slices, blocks);
+    first += batch.rows;
     report(batch.rows);
   }
-  closeBlock();
-  return whole;
+  return { whole, blocks };
 }
 
-const NO_BLOCK = -1;
-
-/** Stretches of rows that belong to one block. */
-function* runsOf(
-  rows: number,
-  blockOf: (row: number) => number,
-): Generator<{ readonly index: number; readonly from: number; readonly to: number }> {
-  let from = 0;
-  while (from < rows) {
-    const index = blockOf(from);
-    let to = from + 1;
-    while (to < rows && blockOf(to) === index) to++;
-    yield { index, from, to };
-    from = to;
+function countBlocks(
+  batch: RowBatch,
+  first: number,
+  plan: BlockPlan,
+  slices: SlicePlan,
+  blocks: Counted["blocks"],
+): void {
+  const blockOf = Int32Array.from({ length: batch.rows }, (_, row) =>
+    plan.blockOf(first + row, batch.timesMs[row] ?? null),
+  );
+  for (const [slice, rows] of membersOf(slices, batch).entries()) {
+    for (const [feature, values] of batch.features.entries()) {
+      const counter = blocks[slice]![feature]!;
+      for (const row of rows) if (blockOf[row]! >= 0) counter.add(blockOf[row]!, values[row]!);
+    }
   }
 }
 
-/** Encoded parts by slice and feature. A block's slice without a row has none. */
-function partsOf(
-  grid: SketchGrid,
-  slices: SlicePlan,
-  request: BaselineRequest,
-  block: number,
-): BaselinePart[] {
+/** Encoded sketches by slice and feature. */
+function partsOf(grid: SketchGrid, slices: SlicePlan, { stream }: BaselineRequest): BaselinePart[] {
   return slices.kept.flatMap(({ slice }, s) =>
-    request.stream.features.flatMap(({ name }, f) => {
-      const sketch = grid.sketches[s]![f]!;
-      if (sketch.counts.events === 0) return [];
-      return [{ slice, feature: name, block, body: sketch.encode() }];
-    }),
+    stream.features.map(({ name }, f) => ({
+      slice,
+      feature: name,
+      block: WHOLE,
+      body: grid.sketches[s]![f]!.encode(),
+    })),
+  );
+}
+
+function blockParts(
+  blocks: Counted["blocks"],
+  plan: BlockPlan,
+  slices: SlicePlan,
+  { stream }: BaselineRequest,
+): BaselinePart[] {
+  return blocks.flatMap((row, s) =>
+    row.map((counter, f) => ({
+      slice: slices.kept[s]!.slice,
+      feature: stream.features[f]!.name,
+      block: BLOCK_COUNTS,
+      body: encodeBlockCounts(counter.counts(plan.blocks.lengthMs, plan.startMs)),
+    })),
   );
 }
 

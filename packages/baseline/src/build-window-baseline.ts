@@ -1,9 +1,12 @@
 import type { StreamConfig } from "@moorline/config";
 import { MoorlineError } from "@moorline/errors";
 import { NumericSketch } from "@moorline/sketch";
+import { type BlockCounts, eventsAt } from "@moorline/stats";
 import type { BaselinePart, RollupRow, Store } from "@moorline/store";
 import { type BaselineManifest, type FrozenValues, MANIFEST_FORMAT } from "./baseline-manifest.js";
-import { BASELINE_COMPRESSION, BLOCK_COMPRESSION, type BuiltBaseline, recordOf } from "./build-baseline.js";
+import { BLOCK_COUNTS, WHOLE } from "./baseline-parts.js";
+import { encodeBlockCounts } from "./block-counts-codec.js";
+import { BASELINE_COMPRESSION, type BuiltBaseline, recordOf } from "./build-baseline.js";
 import { atomValues, thresholdValues } from "./freeze-values.js";
 import { MOORLINE_VERSION } from "./moorline-version.js";
 import { LEAST_SLICE_ROWS } from "./slice-plan.js";
@@ -19,7 +22,7 @@ export interface WindowBaselineRequest {
   readonly note?: string;
 }
 
-const MOST_BLOCKS = 200;
+const MOST_BLOCKS = 4_096;
 
 /**
  * A baseline from stored windows: what production was in a time that was good. Quantiles come from the panes' sketches, so that counts at the
@@ -37,11 +40,12 @@ export async function buildWindowBaseline(request: WindowBaselineRequest): Promi
   const starts = extentRows.map(({ startMs }) => startMs);
   const panesInBlock = Math.max(1, Math.ceil((toMs - fromMs) / stream.paneMs / MOST_BLOCKS));
   const blockMs = panesInBlock * stream.paneMs;
-  const gathered = new Gathered();
+  const extent = { startMs: fromMs, lengthMs: blockMs, count: Math.ceil((toMs - fromMs) / blockMs) };
+  const gathered = new Gathered(extent);
   for (const slice of await store.panes.slices(stream.name)) {
     for (const { name } of stream.features) {
       const rows = await panesOf(request, slice, name);
-      gathered.take(slice, name, rows, (startMs) => Math.floor((startMs - fromMs) / blockMs));
+      gathered.take(slice, name, rows);
     }
   }
   const features = stream.features.map(({ name, unit }) => gathered.featureOf(name, unit));
@@ -92,12 +96,13 @@ class Gathered {
   readonly #rows = new Map<string, number>();
   readonly #whole = new Map<string, NumericSketch>();
 
-  take(
-    slice: string,
-    feature: string,
-    rows: readonly RollupRow[],
-    blockOf: (startMs: number) => number,
-  ): void {
+  readonly #blocks: BlockExtent;
+
+  constructor(blocks: BlockExtent) {
+    this.#blocks = blocks;
+  }
+
+  take(slice: string, feature: string, rows: readonly RollupRow[]): void {
     if (rows.length === 0) return;
     const sketches = rows.map((row) => NumericSketch.decode(row.body));
     // Thresholds are frozen from what is kept, so that whoever reads it freezes the same ones.
@@ -110,13 +115,13 @@ class Gathered {
     }
     this.#rows.set(slice, Math.max(events, this.#rows.get(slice) ?? 0));
     if (slice === "all") this.#whole.set(feature, whole);
-    this.#keep(this.thresholds, slice, feature, thresholdValues(whole));
+    const thresholds = thresholdValues(whole);
+    this.#keep(this.thresholds, slice, feature, thresholds);
     this.#keep(this.atoms, slice, feature, atomValues(whole));
-    this.parts.push({ slice, feature, block: -1, body });
-    for (const [block, members] of groupBy(sketches, (_, i) => blockOf(rows[i]!.startMs))) {
-      const merged = NumericSketch.merge(members, { compression: BLOCK_COMPRESSION });
-      this.parts.push({ slice, feature, block, body: merged.encode() });
-    }
+    this.parts.push({ slice, feature, block: WHOLE, body });
+    const startsMs = rows.map(({ startMs }) => startMs);
+    const counts = blockCountsOf(this.#blocks, startsMs, sketches, thresholds);
+    this.parts.push({ slice, feature, block: BLOCK_COUNTS, body: encodeBlockCounts(counts) });
   }
 
   get slices(): { slice: string; rows: number }[] {
@@ -139,13 +144,34 @@ class Gathered {
   }
 }
 
-function groupBy<T>(items: readonly T[], keyOf: (item: T, index: number) => number): Map<number, T[]> {
-  const groups = new Map<number, T[]>();
-  for (const [index, item] of items.entries()) {
-    const key = keyOf(item, index);
-    const group = groups.get(key);
-    if (group === undefined) groups.set(key, [item]);
-    else group.push(item);
+interface BlockExtent {
+  readonly startMs: number;
+  readonly lengthMs: number;
+  readonly count: number;
+}
+
+/** Counts at thresholds that the panes were not counted for are read from their digests, to the nearest whole one. */
+function blockCountsOf(
+  { startMs, lengthMs, count }: BlockExtent,
+  startsMs: readonly number[],
+  sketches: readonly NumericSketch[],
+  thresholds: readonly number[],
+): BlockCounts {
+  const column = () => new Float64Array(count);
+  const [events, missing, finite] = [column(), column(), column()];
+  const atOrBelow = thresholds.map(column);
+  for (const [pane, sketch] of sketches.entries()) {
+    const block = Math.floor((startsMs[pane]! - startMs) / lengthMs);
+    events[block]! += sketch.counts.events;
+    missing[block]! += sketch.counts.missing;
+    finite[block]! += sketch.counts.finite;
+    if (sketch.counts.finite === 0) continue;
+    const view = sketch.toCdf();
+    let least = 0;
+    for (const [share, threshold] of thresholds.entries()) {
+      least = Math.max(least, Math.min(sketch.counts.finite, Math.round(eventsAt(view, threshold).upTo)));
+      atOrBelow[share]![block]! += least;
+    }
   }
-  return groups;
+  return { lengthMs, startMs, events, missing, finite, atOrBelow };
 }

@@ -7,10 +7,12 @@ export {
   manifestOf,
   type SliceRows,
 } from "./baseline-manifest.js";
+export { BLOCK_COUNTS, WHOLE } from "./baseline-parts.js";
+export { decodeBlockCounts, encodeBlockCounts } from "./block-counts-codec.js";
+export { blockLengthMs } from "./block-plan.js";
 export {
   BASELINE_COMPRESSION,
   type BaselineRequest,
-  BLOCK_COMPRESSION,
   type BuiltBaseline,
   buildBaseline,
 } from "./build-baseline.js";
@@ -18,6 +20,7 @@ export { buildWindowBaseline, type WindowBaselineRequest } from "./build-window-
 export { FileSides } from "./file-sides.js";
 export type { ColumnKind, FileColumn } from "./files/file-columns.js";
 export { findBaseline } from "./find-baseline.js";
+export { HeldFeature } from "./held-feature.js";
 export { type BaselineSide, loadBaselineSide, sideOfPart, sideOfSketch } from "./load-baseline-side.js";
 export type { OnProgress, ReadProgress } from "./read-progress.js";
 export { LEAST_SLICE_ROWS } from "./slice-plan.js";

@@ -2,6 +2,7 @@ import { MoorlineError } from "@moorline/errors";
 import { NumericSketch } from "@moorline/sketch";
 import type { NumericSide } from "@moorline/stats";
 import type { BaselinePart, Store } from "@moorline/store";
+import { WHOLE } from "./baseline-parts.js";
 import { OWN_THRESHOLDS } from "./own-thresholds.js";
 
 /** The whole of a baseline for one feature, as a side of a comparison. */
@@ -35,7 +36,7 @@ async function wholePart(
   slice: string,
   feature: string,
 ): Promise<BaselinePart | undefined> {
-  const [part] = await store.baselines.parts(id, { slice, feature, block: -1 });
+  const [part] = await store.baselines.parts(id, { slice, feature, block: WHOLE });
   return part;
 }
 

@@ -1,6 +1,6 @@
 import { NumericSketch, type SketchOptions } from "@moorline/sketch";
 import type { RowBatch } from "./files/row-table.js";
-import type { SlicePlan } from "./slice-plan.js";
+import { membersOf, type SlicePlan } from "./slice-plan.js";
 
 /** One sketch a feature and slice, fed from batches of rows. */
 export class SketchGrid {
@@ -20,11 +20,9 @@ export class SketchGrid {
     );
   }
 
-  /** Takes the rows [from, to) of a batch. */
-  take(batch: RowBatch, from: number = 0, to: number = batch.rows): void {
-    const members = this.#membersOf(batch, from, to);
-    if (this.#scratch.length < to - from) this.#scratch = new Float64Array(to - from);
-    for (const [slice, rows] of members.entries()) {
+  take(batch: RowBatch): void {
+    if (this.#scratch.length < batch.rows) this.#scratch = new Float64Array(batch.rows);
+    for (const [slice, rows] of membersOf(this.#slices, batch).entries()) {
       if (rows.length === 0) continue;
       for (const [feature, values] of batch.features.entries()) {
         this.#addRows(this.sketches[slice]![feature]!, values, rows);
@@ -40,19 +38,5 @@ export class SketchGrid {
     }
     sketch.addColumn(this.#scratch, count);
     if (count < rows.length) sketch.addMissing(rows.length - count);
-  }
-
-  /** By slice: the rows that belong to it. */
-  #membersOf(batch: RowBatch, from: number, to: number): number[][] {
-    const members: number[][] = this.#slices.kept.map(() => []);
-    for (let row = from; row < to; row++) members[0]!.push(row);
-    for (const [column, index] of this.#slices.indexOf.entries()) {
-      const values = batch.slices[column]!;
-      for (let row = from; row < to; row++) {
-        const slice = index.get(values[row]!);
-        if (slice !== undefined) members[slice]!.push(row);
-      }
-    }
-    return members;
   }
 }

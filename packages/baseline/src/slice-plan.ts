@@ -1,5 +1,5 @@
 import type { SliceRows } from "./baseline-manifest.js";
-import type { RowTable } from "./files/row-table.js";
+import type { RowBatch, RowTable } from "./files/row-table.js";
 
 /** Rows that a slice needs for a baseline of its own: fewer say too little of a tail. */
 export const LEAST_SLICE_ROWS = 1_000;
@@ -30,6 +30,20 @@ export async function planSlices(table: RowTable, sliceLimit: number): Promise<S
     indexOf.push(index);
   }
   return { kept, leftOut: leftOut.slice(0, LISTED_LEFT_OUT), indexOf };
+}
+
+/** By slice: the rows of a batch that belong to it. */
+export function membersOf(plan: SlicePlan, batch: RowBatch): readonly (readonly number[])[] {
+  const members: number[][] = plan.kept.map(() => []);
+  for (let row = 0; row < batch.rows; row += 1) members[0]!.push(row);
+  for (const [column, index] of plan.indexOf.entries()) {
+    const values = batch.slices[column]!;
+    for (let row = 0; row < batch.rows; row += 1) {
+      const slice = index.get(values[row]!);
+      if (slice !== undefined) members[slice]!.push(row);
+    }
+  }
+  return members;
 }
 
 const LISTED_SLICES = 10_200;

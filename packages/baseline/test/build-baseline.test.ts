@@ -4,8 +4,10 @@ import { numericSideOf, quantileOf } from "@moorline/stats";
 import { afterAll, describe, expect, it } from "vitest";
 import {
   type BaselineManifest,
+  BLOCK_COUNTS,
   type BuiltBaseline,
   buildBaseline,
+  decodeBlockCounts,
   type ReadProgress,
   sideOfPart,
 } from "../src/index.js";
@@ -27,6 +29,10 @@ const request = { stream: sampleStream(), createdBy: "test", createdAtMs: 1, not
 const manifestOfBuilt = (built: BuiltBaseline) => built.record.manifest as BaselineManifest;
 const wholeOf = (built: BuiltBaseline, slice: string, feature: string) =>
   built.parts.find((part) => part.slice === slice && part.feature === feature && part.block === -1);
+const blockCountsOf = (built: BuiltBaseline, slice: string, feature: string) =>
+  decodeBlockCounts(
+    built.parts.find((p) => p.slice === slice && p.feature === feature && p.block === BLOCK_COUNTS)!.body,
+  );
 
 const temps = (rows: readonly SampleRow[]) => rows.map(({ temp }) => temp).filter((temp) => temp !== null);
 
@@ -176,22 +182,33 @@ describe("buildBaseline", () => {
   it("makes blocks by the event time that hold each row once, with counts at the same thresholds", async () => {
     const built = await buildBaseline({ ...request, from: writeNdjson("f.ndjson", ROWS) });
     const { blocks, thresholds } = manifestOfBuilt(built);
-    // 20,000 rows six seconds apart are 33 h 20 min: 200 blocks of 10 min.
+    // 20,000 rows six seconds apart are 33 h 20 min: 400 blocks as long as the shortest horizon.
     expect(blocks).toMatchObject({
       by: "time",
-      count: 200,
-      lengthMs: 600_000,
-      sentence: "200 blocks of 10m by at",
+      count: 400,
+      lengthMs: 300_000,
+      sentence: "400 blocks of 5m by at",
     });
-    const parts = built.parts.filter((p) => p.block >= 0 && p.slice === "all" && p.feature === "doors");
-    const sketches = parts.map(({ body }) => NumericSketch.decode(body));
-    expect(sketches.map(({ counts }) => counts.events)).toEqual(Array(200).fill(100));
+    const counts = blockCountsOf(built, "all", "doors");
+    expect(counts).toMatchObject({ lengthMs: 300_000, startMs: ROWS[0]!.atMs });
+    expect([...(counts.events as Float64Array)]).toEqual(Array(400).fill(50));
     const whole = sideOfPart(wholeOf(built, "all", "doors")!, "id").thresholdCounts!;
-    const summed = whole.values.map((_, k) =>
-      sketches.reduce((s, b) => s + b.thresholdCounts()!.counts[k]!, 0),
-    );
+    const summed = counts.atOrBelow.map((hits) => (hits as Float64Array).reduce((a, b) => a + b, 0));
     expect(summed).toEqual(whole.counts);
     expect(whole.values).toEqual(thresholds.find((t) => t.slice === "all" && t.feature === "doors")!.values);
+    // By hand, for one block: what lies at or below the median's threshold.
+    const seventh = ROWS.slice(6 * 50, 7 * 50).filter(({ doors }) => doors <= whole.values[5]!).length;
+    expect(counts.atOrBelow[5]![6]).toBe(seventh);
+  });
+
+  it("counts missing values in the blocks they fall in", async () => {
+    const built = await buildBaseline({ ...request, from: writeNdjson("f2.ndjson", ROWS) });
+    const { events, missing, finite } = blockCountsOf(built, "all", "cargo_temp");
+    const missingIn = (block: number) =>
+      ROWS.slice(block * 50, (block + 1) * 50).filter(({ temp }) => temp === null).length;
+    expect([...(missing as Float64Array)]).toEqual(Array.from({ length: 400 }, (_, b) => missingIn(b)));
+    for (let block = 0; block < 400; block += 1)
+      expect(finite[block]! + missing[block]!).toBeLessThanOrEqual(events[block]!);
   });
 
   it("puts rows that are out of order into the blocks of their time", async () => {
@@ -199,10 +216,8 @@ describe("buildBaseline", () => {
       .sort((a, b) => a.key - b.key)
       .map(({ row }) => row);
     const built = await buildBaseline({ ...request, from: writeNdjson("g.ndjson", shuffled) });
-    const sizes = built.parts
-      .filter((p) => p.block >= 0 && p.slice === "all" && p.feature === "doors")
-      .map(({ body, block }) => [block, NumericSketch.decode(body).counts.events]);
-    expect(sizes).toEqual(Array.from({ length: 200 }, (_, block) => [block, 100]));
+    const inOrder = await buildBaseline({ ...request, from: writeNdjson("g2.ndjson", ROWS) });
+    expect(blockCountsOf(built, "all", "doors")).toEqual(blockCountsOf(inOrder, "all", "doors"));
   });
 
   it("makes blocks by the order of the rows where no column tells the time", async () => {
@@ -228,7 +243,7 @@ describe("buildBaseline", () => {
     const lines = ROWS.map(({ atMs, temp, doors }) => `${atMs / msPerUnit},${temp ?? ""},${doors}`);
     const from = writeFileOf("times.csv", `stamp,cargo_temp,doors\n${lines.join("\n")}\n`);
     const built = await buildBaseline({ ...request, from, timeColumn: "stamp" });
-    expect(manifestOfBuilt(built).blocks).toMatchObject({ by: "time", count: 200, lengthMs: 600_000 });
+    expect(manifestOfBuilt(built).blocks).toMatchObject({ by: "time", count: 400, lengthMs: 300_000 });
   });
 
   it("reads several files by a pattern as one, in the order of their names", async () => {

@@ -113,7 +113,7 @@ const slice = z
   .meta({ title: "name or {key, path}" });
 
 const decision = z.strictObject({
-  persistence: whole(1, 1_000, 3, "Windows beyond tolerance in a row that make a feature `adrift`."),
+  persistence: whole(1, 24, 3, "Blocks of windows beyond tolerance in a row that make a feature `adrift`."),
   releaseAfter: whole(1, 1_000, 3, "Windows within tolerance in a row that make it `holding` again."),
   bodyFloor: z
     .number()

@@ -1,13 +1,14 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { compareNumeric } from "../src/compare-numeric.js";
-import { compareVerdict } from "../src/compare-verdict.js";
-import { decide } from "../src/decide.js";
+import { compareVerdict } from "../src/decision/compare-verdict.js";
+import { decide } from "../src/decision/decide.js";
 import { ksDistance } from "../src/ks-distance.js";
 import { numericSideOf } from "../src/numeric-side.js";
 import { quantilePairs } from "../src/quantile-pairs.js";
 import { wassersteinScale } from "../src/wasserstein-scale.js";
 import { wasserstein1 } from "../src/wasserstein1.js";
+import { assumedGround, judged } from "./kit/grounds.js";
 import { Random } from "./kit/random.js";
 import { PROPERTY, samples, slopingViews } from "./kit/samples.js";
 
@@ -107,7 +108,11 @@ describe("compareNumeric(baseline, production)", () => {
     fc.assert(
       fc.property(samples, samples, (a, b) => {
         const comparison = compare(a, b);
-        const answers = [comparison, compareVerdict(comparison), decide(null, comparison)];
+        const answers = [
+          comparison,
+          compareVerdict(comparison),
+          decide(null, judged(comparison, null), assumedGround()),
+        ];
         expect(JSON.parse(JSON.stringify(answers))).toEqual(answers);
         expect(numbersIn(answers).filter((x) => !Number.isFinite(x))).toEqual([]);
       }),
@@ -121,7 +126,11 @@ describe("compareNumeric(baseline, production)", () => {
         const side = (cdf: typeof a) => ({ cdf, events: Math.ceil(cdf.n), missing: 0, nonFinite: 0 });
         const comparison = compareNumeric(side(a), side(b));
         expect(comparison.exactCounts).toBe(false);
-        const answers = [comparison, compareVerdict(comparison), decide(null, comparison)];
+        const answers = [
+          comparison,
+          compareVerdict(comparison),
+          decide(null, judged(comparison, null), assumedGround()),
+        ];
         expect(numbersIn(answers).filter((x) => !Number.isFinite(x))).toEqual([]);
       }),
       PROPERTY,

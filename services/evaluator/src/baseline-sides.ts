@@ -1,9 +1,8 @@
-import { sideOfPart } from "@moorline/baseline";
-import type { NumericSide } from "@moorline/stats";
+import { BLOCK_COUNTS, HeldFeature, WHOLE } from "@moorline/baseline";
 import type { Store } from "@moorline/store";
 
 export interface HeldAgainst {
-  readonly side: NumericSide;
+  readonly held: HeldFeature;
   /** The slice of the baseline that it is: `all` where the baseline has no part for the slice. */
   readonly slice: string;
 }
@@ -13,7 +12,7 @@ export class BaselineSides {
   readonly #store: Store;
   readonly #stream: string;
   #id: string | null = null;
-  #sides = new Map<string, NumericSide>();
+  #sides = new Map<string, HeldFeature>();
 
   constructor(store: Store, stream: string) {
     this.#store = store;
@@ -29,10 +28,15 @@ export class BaselineSides {
     const active = await this.#store.baselines.active(this.#stream);
     const id = active?.baselineId ?? null;
     if (id === this.#id) return;
-    const parts = id === null ? [] : await this.#store.baselines.parts(id, { block: -1 });
-    const sides = new Map<string, NumericSide>();
-    for (const part of parts) {
-      sides.set(sideKey(part.slice, part.feature), sideOfPart(part, id!));
+    const partsOf = async (block: number) =>
+      id === null ? [] : await this.#store.baselines.parts(id, { block });
+    const blocks = new Map(
+      (await partsOf(BLOCK_COUNTS)).map((part) => [sideKey(part.slice, part.feature), part]),
+    );
+    const sides = new Map<string, HeldFeature>();
+    for (const whole of await partsOf(WHOLE)) {
+      const key = sideKey(whole.slice, whole.feature);
+      sides.set(key, new HeldFeature(whole, blocks.get(key) ?? null, id!));
       await rest();
     }
     this.#sides = sides;
@@ -42,9 +46,9 @@ export class BaselineSides {
   /** Null when the baseline has nothing of the feature. */
   of(slice: string, feature: string): HeldAgainst | null {
     const own = this.#sides.get(sideKey(slice, feature));
-    if (own !== undefined) return { side: own, slice };
+    if (own !== undefined) return { held: own, slice };
     const whole = this.#sides.get(sideKey("all", feature));
-    return whole === undefined ? null : { side: whole, slice: "all" };
+    return whole === undefined ? null : { held: whole, slice: "all" };
   }
 }
 

@@ -6,7 +6,10 @@ import {
   type DecisionMemory,
   type DecisionRule,
   decide,
+  decisionSentence,
   type NumericComparison,
+  whyOf,
+  windowCounts,
 } from "@moorline/stats";
 import type { EvaluationRow, FeatureStateRow } from "@moorline/store";
 import { type RangeSketch, readRange } from "@moorline/windows";
@@ -47,7 +50,7 @@ export function readWindow(
 
 /** Compares a window with the baseline, without deciding. */
 export function compareWindow(range: RangeSketch, against: HeldAgainst): NumericComparison {
-  return compareNumeric(against.side, sideOfSketch(range.sketch ?? new NumericSketch()));
+  return compareNumeric(against.held.side, sideOfSketch(range.sketch ?? new NumericSketch()));
 }
 
 /** Compares and decides: the evaluation, the state that follows from it and from the state before. */
@@ -69,9 +72,11 @@ export function judgeWindow(
     return { evaluation: null, state, figures: {} };
   }
   const comparison = compareWindow(range, against);
-  const memory = before?.baselineId === baselines.id ? (before.memory as DecisionMemory | null) : null;
-  const decision = decide(memory, comparison, rule, at.window.endMs);
-  const state = stateRow(place, at, decision.state, before, baselines.id, decision.memory, decision.sentence);
+  const ground = against.held.ground(at.window.endMs - at.window.startMs, rule);
+  const counts = windowCounts(comparison);
+  const decision = decide(memoryOf(before, baselines.id), { counts, endMs: at.window.endMs }, ground);
+  const sentence = decisionSentence(decision, counts, ground);
+  const state = stateRow(place, at, decision.state, before, baselines.id, decision.memory, sentence);
   return {
     evaluation: {
       ...place,
@@ -85,8 +90,21 @@ export function judgeWindow(
       evaluatedAtMs: nowMs,
     },
     state,
-    figures: { place: decision.place, rule, n: comparison.n, exactCounts: comparison.exactCounts },
+    figures: {
+      place: decision.memory.place,
+      why: whyOf(decision, ground),
+      rule,
+      n: comparison.n,
+      exactCounts: comparison.exactCounts,
+    },
   };
+}
+
+/** Null for a feature that was never judged against this baseline, or by a version that kept something else. */
+function memoryOf(before: FeatureStateRow | undefined, baselineId: string): DecisionMemory | null {
+  if (before?.baselineId !== baselineId) return null;
+  const memory = before.memory as Partial<DecisionMemory> | null;
+  return memory?.history === undefined ? null : (memory as DecisionMemory);
 }
 
 /** What is kept of a comparison: everything but its pairs, which are made again from rollups when somebody asks. */

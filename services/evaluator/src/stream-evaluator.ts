@@ -1,6 +1,5 @@
 import { setImmediate as nextTurn } from "node:timers/promises";
 import type { StreamConfig } from "@moorline/config";
-import { DEFAULT_DECISION_RULE, type DecisionRule } from "@moorline/stats";
 import type {
   EvaluationCommit,
   FeatureStateRow,
@@ -18,6 +17,7 @@ import { panePlan } from "./pane-plan.js";
 import { silenceChange } from "./silence.js";
 import { StateBook } from "./state-book.js";
 import { StreamGauges } from "./stream-gauges.js";
+import { streamRule } from "./stream-rule.js";
 import { watermark } from "./watermark.js";
 
 /** Panes closed before the tick looks again at what is pending. */
@@ -40,7 +40,6 @@ export interface StreamEvaluatorParts {
 /** One stream's evaluation, by whoever holds its lease. */
 export class StreamEvaluator {
   readonly #parts: StreamEvaluatorParts;
-  readonly #rule: DecisionRule;
   readonly #baselines: BaselineSides;
   readonly #lease: LeaseKeeper;
   readonly #gauges: StreamGauges;
@@ -55,8 +54,6 @@ export class StreamEvaluator {
   constructor(parts: StreamEvaluatorParts) {
     const { stream, store, telemetry, owner, nowMs } = parts;
     this.#parts = parts;
-    const { persistence, releaseAfter, bodyFloor, tailFactor } = stream.decision;
-    this.#rule = { ...DEFAULT_DECISION_RULE, persistence, releaseAfter, bodyFloor, tailFactor };
     this.#baselines = new BaselineSides(store, stream.name);
     this.#lease = new LeaseKeeper(store, `evaluate ${stream.name}`, owner, nowMs);
     this.#gauges = new StreamGauges(telemetry.metrics, stream);
@@ -168,7 +165,7 @@ export class StreamEvaluator {
     return {
       store,
       stream,
-      rule: this.#rule,
+      rule: streamRule(stream, this.#slices.size),
       baselines: this.#baselines,
       states: this.#states,
       slices: this.#slices,

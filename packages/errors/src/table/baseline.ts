@@ -72,4 +72,9 @@ export const BASELINE_ERRORS = errorRows({
     template: "the manifest of baseline {id} has format {format}, which this program does not read",
     hint: "update the program that reads it, or set the baseline again",
   },
+  MOORLINE_FORMAT_BLOCK_COUNTS: {
+    category: "FORMAT",
+    template: "the block counts of a baseline cannot be read: {reason}",
+    hint: "set the baseline anew from its source; if the store's file was damaged, restore it first",
+  },
 });

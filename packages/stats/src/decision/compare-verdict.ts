@@ -1,9 +1,9 @@
+import { BAND_CRITICAL, type BandConfidence } from "../deviance-band.js";
+import type { NumericComparison } from "../numeric-comparison.js";
 import { DEFAULT_DECISION_RULE, type DecisionRule } from "./decision-rule.js";
-import { BAND_CRITICAL, type BandConfidence } from "./deviance-band.js";
-import { type DriftPlace, placeOf, sentenceOf } from "./drift-place.js";
-import { countInWords } from "./figures-in-words.js";
-import type { NumericComparison } from "./numeric-comparison.js";
-import { standingOf } from "./tolerance.js";
+import { type DriftPlace, placeOf } from "./drift-place.js";
+import { holdingSentence, sentenceOf, tooFewSentence } from "./share-sentence.js";
+import { standingOf } from "./standing.js";
 import { furthestFirst, type WatchedShare, watchedShares } from "./watched-share.js";
 
 export interface Verdict {
@@ -40,7 +40,7 @@ export function compareVerdict(
     ({ floorPassed, z }) => leavesBand(z, 0.999) || (floorPassed && leavesBand(z, 0.95)),
   );
   if (straining) return verdictAt("straining", straining);
-  return { state: "holding", place: null, sentence: holdingSentence(comparison) };
+  return { state: "holding", place: null, sentence: holdingSentence(comparison.n) };
 }
 
 /** Below this even a total displacement cannot leave the band. */
@@ -58,14 +58,6 @@ function verdictAt(
 }
 
 /** Why a comparison is too thin, in words. */
-export function thinSentence(comparison: NumericComparison): string {
-  const { n, reason } = comparison;
-  if (reason !== null) return `too few values to tell: ${reason}`;
-  return `too few values to tell: n = ${countInWords(n.production)} against ${countInWords(n.baseline)} in the baseline`;
-}
-
-/** That nothing is beyond tolerance, in words. */
-export function holdingSentence(comparison: NumericComparison): string {
-  const { n } = comparison;
-  return `within tolerance at every threshold; n = ${countInWords(n.production)} against ${countInWords(n.baseline)} in the baseline`;
+function thinSentence({ n, reason }: NumericComparison): string {
+  return reason === null ? tooFewSentence(n) : `too few values to tell: ${reason}`;
 }

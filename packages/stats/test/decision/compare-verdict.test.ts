@@ -1,10 +1,10 @@
 import { describe, expect, test } from "vitest";
-import { compareNumeric } from "../src/compare-numeric.js";
-import { compareVerdict } from "../src/compare-verdict.js";
-import { DEFAULT_DECISION_RULE } from "../src/decision-rule.js";
-import { numericSideOf } from "../src/numeric-side.js";
-import { Random } from "./kit/random.js";
-import { evenSample, WINDOWS } from "./kit/windows.js";
+import { compareNumeric } from "../../src/compare-numeric.js";
+import { compareVerdict } from "../../src/decision/compare-verdict.js";
+import { DEFAULT_DECISION_RULE } from "../../src/decision/decision-rule.js";
+import { numericSideOf } from "../../src/numeric-side.js";
+import { Random } from "../kit/random.js";
+import { evenSample, WINDOWS } from "../kit/windows.js";
 
 describe("compareVerdict(comparison)", () => {
   test("compareVerdict of the same distribution is holding and says n", () => {

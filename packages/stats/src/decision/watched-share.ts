@@ -1,34 +1,28 @@
-import { effectiveEvents } from "./effective-events.js";
-import { partOfRank } from "./grid-ranks.js";
-import type { NumericComparison } from "./numeric-comparison.js";
-import { nearestTo } from "./threshold-shares.js";
+import { effectiveEvents } from "../effective-events.js";
+import { partOfRank } from "../grid-ranks.js";
+import type { NumericComparison } from "../numeric-comparison.js";
+import { nearestTo } from "../threshold-shares.js";
+import type { SharePair } from "./floors.js";
 
-/** One share that the decision watches: at or below a frozen threshold, or without a value. */
-export interface WatchedShare {
-  /** Names the share from window to window: `p` and the rank, or `missing`. */
-  readonly key: string;
-  readonly part: "lower tail" | "body" | "upper tail" | "missing";
+/** One share that a comparison is judged by: at or below a frozen threshold, or without a value. */
+export interface WatchedShare extends SharePair {
   /** Of the threshold; null for `missing`. */
   readonly rank: number | null;
   /** The threshold; null for `missing`. */
   readonly value: number | null;
-  readonly expected: number;
-  readonly observed: number;
   /** Observed, moved towards the expected by what a sketch may be off: what z is computed from. */
   readonly proven: number;
-  /** Events that the shares are of. */
+  /** Events that the expected share is of. */
   readonly baselineEvents: number;
-  readonly productionEvents: number;
 }
 
-/** The shares of a comparison that rest on enough events to be judged; empty when the window is too thin for any. */
+/** The shares of a comparison that rest on enough events to be judged; empty when it is too thin for any. */
 export function watchedShares(comparison: NumericComparison, minEvents: number): readonly WatchedShare[] {
   const watched: WatchedShare[] = [];
   const { n, events, missing } = comparison;
   if (effectiveEvents(n.baseline, n.production) >= minEvents) {
     for (const share of comparison.shares) {
       watched.push({
-        key: `p${share.rank}`,
         part: partOfRank(share.rank),
         rank: share.rank,
         value: share.value,
@@ -36,14 +30,13 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
         observed: share.observed,
         proven: nearestTo(share.expected, share.observed, share.rankError),
         baselineEvents: n.baseline,
-        productionEvents: n.production,
+        events: n.production,
       });
     }
   }
   if (effectiveEvents(events.baseline, events.production) >= minEvents) {
     const observed = missing.production ?? 0;
     watched.push({
-      key: "missing",
       part: "missing",
       rank: null,
       value: null,
@@ -51,7 +44,7 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
       observed,
       proven: observed,
       baselineEvents: events.baseline,
-      productionEvents: events.production,
+      events: events.production,
     });
   }
   return watched;
@@ -59,10 +52,14 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
 
 /** Orders shares for being spoken of: furthest first; at equal |z| (thresholds that share a value) the body, then the fitting rank. */
 export function furthestFirst(
-  a: { readonly share: WatchedShare; readonly z: number },
-  b: { readonly share: WatchedShare; readonly z: number },
+  a: { readonly share: PlacedShare; readonly z: number },
+  b: { readonly share: PlacedShare; readonly z: number },
 ): number {
-  const misfit = ({ share }: { readonly share: WatchedShare }) =>
-    (share.part === "body" ? 0 : 1) + Math.abs((share.rank ?? share.expected) - share.expected);
-  return Math.abs(b.z) - Math.abs(a.z) || misfit(a) - misfit(b);
+  return Math.abs(b.z) - Math.abs(a.z) || misfit(a.share) - misfit(b.share);
+}
+
+type PlacedShare = Pick<WatchedShare, "part" | "rank" | "expected">;
+
+function misfit({ part, rank, expected }: PlacedShare): number {
+  return (part === "body" ? 0 : 1) + Math.abs((rank ?? expected) - expected);
 }

@@ -1,27 +1,12 @@
 import { describe, expect, test } from "vitest";
-import { DEFAULT_DECISION_RULE } from "../src/decision-rule.js";
-import { signedRootDeviance } from "../src/signed-root-deviance.js";
-import { standingOf } from "../src/tolerance.js";
-import type { WatchedShare } from "../src/watched-share.js";
+import { DEFAULT_DECISION_RULE } from "../../src/decision/decision-rule.js";
+import { isFarAtOnce, passesFloor, type WatchedPart } from "../../src/decision/floors.js";
+import { standingOf } from "../../src/decision/standing.js";
+import { signedRootDeviance } from "../../src/signed-root-deviance.js";
 
-/** A watched share of a window of `m` events against a baseline of a million. */
-function share(part: WatchedShare["part"], expected: number, observed: number, m: number): WatchedShare {
-  return {
-    key: "p",
-    part,
-    rank: part === "missing" ? null : expected,
-    value: part === "missing" ? null : 0,
-    expected,
-    observed,
-    proven: observed,
-    baselineEvents: 1_000_000,
-    productionEvents: m,
-  };
-}
+const rule = DEFAULT_DECISION_RULE;
 
-const standing = (...args: Parameters<typeof share>) => standingOf(share(...args), DEFAULT_DECISION_RULE);
-
-describe("standingOf(share, rule)", () => {
+describe("passesFloor(part, observed, expected, events, rule)", () => {
   test.each([
     { name: "the body moved by .05", of: ["body", 0.5, 0.551, 5000], floor: true },
     { name: "the body moved by .049", of: ["body", 0.5, 0.549, 5000], floor: false },
@@ -44,19 +29,15 @@ describe("standingOf(share, rule)", () => {
     { name: "half as much again missing", of: ["missing", 0.1, 0.151, 5000], floor: true },
     { name: "a third more missing", of: ["missing", 0.1, 0.133, 5000], floor: false },
     { name: "fewer missing by half", of: ["missing", 0.1, 0.049, 5000], floor: true },
-  ] as const)("standingOf $name: floor passed $floor", ({ of: [part, expected, observed, m], floor }) => {
-    expect(standing(part, expected, observed, m).floorPassed).toBe(floor);
+  ] as const)("passesFloor for $name: $floor", ({ of: [part, expected, observed, m], floor }) => {
+    expect(passesFloor(part, observed, expected, m, rule)).toBe(floor);
   });
+});
 
-  test("standingOf is beyond only where the difference is not for want of data", () => {
-    expect(standing("body", 0.5, 0.56, 100)).toMatchObject({ floorPassed: true, beyond: false });
-    expect(standing("body", 0.5, 0.56, 1000)).toMatchObject({ floorPassed: true, beyond: true });
-  });
-
+describe("isFarAtOnce(share, rule)", () => {
   test.each([
-    { name: "the body by .15 with |z| over 10", of: ["body", 0.5, 0.66, 5000], atOnce: true },
+    { name: "the body by .15", of: ["body", 0.5, 0.66, 5000], atOnce: true },
     { name: "the body by .1, however certain", of: ["body", 0.5, 0.6, 500_000], atOnce: false },
-    { name: "the body by .3 with |z| of 6", of: ["body", 0.5, 0.8, 80], atOnce: false },
     { name: "a tail five times as heavy", of: ["upper tail", 0.99, 0.95, 2000], atOnce: true },
     {
       name: "a tail three times as heavy, however certain",
@@ -66,20 +47,31 @@ describe("standingOf(share, rule)", () => {
     { name: "a far tail with 20 events", of: ["upper tail", 0.9999, 0.98, 1000], atOnce: false },
     { name: "a tenth missing, however certain", of: ["missing", 0.0001, 0.1, 5000], atOnce: false },
     { name: "a fifth missing", of: ["missing", 0.0001, 0.2, 5000], atOnce: true },
-  ] as const)("standingOf $name: at once $atOnce", ({ of: [part, expected, observed, m], atOnce }) => {
-    expect(standing(part, expected, observed, m).atOnce).toBe(atOnce);
+  ] as const)("isFarAtOnce for $name: $atOnce", ({ of: [part, expected, observed, events], atOnce }) => {
+    expect(isFarAtOnce({ part, observed, expected, events }, rule)).toBe(atOnce);
+  });
+});
+
+describe("standingOf(share, rule, designEffect)", () => {
+  const share = (observed: number, proven = observed) => ({
+    part: "body" as WatchedPart,
+    rank: 0.5,
+    value: 0,
+    expected: 0.5,
+    observed,
+    proven,
+    baselineEvents: 1_000_000,
+    events: 1_000,
   });
 
   test("standingOf divides the events by the design effect", () => {
-    const rule = { ...DEFAULT_DECISION_RULE, designEffect: 4 };
-    const { z } = standingOf(share("body", 0.5, 0.6, 1000), rule);
-    expect(z).toBeCloseTo(standing("body", 0.5, 0.6, 1000).z / 2, 10);
+    const { z } = standingOf(share(0.6), rule, 4);
+    expect(z).toBeCloseTo(standingOf(share(0.6), rule).z / 2, 2);
   });
 
   test("standingOf takes z from what a sketch proves and the floor from what was observed", () => {
-    const read = { ...share("body", 0.5, 0.56, 2000), proven: 0.52 };
-    const { z, floorPassed } = standingOf(read, DEFAULT_DECISION_RULE);
+    const { z, floorPassed } = standingOf(share(0.56, 0.52), rule);
     expect(floorPassed).toBe(true);
-    expect(z).toBeCloseTo(signedRootDeviance(0.52, 0.5, (2000 * 1e6) / (2000 + 1e6)), 10);
+    expect(z).toBeCloseTo(signedRootDeviance(0.52, 0.5, (1000 * 1e6) / (1000 + 1e6)), 10);
   });
 });
