@@ -32,6 +32,11 @@ export const SKETCH_ERRORS = errorRows({
     template: "count {count} is not a whole number from 0 to {most}",
     hint: "give a whole number in that range",
   },
+  MOORLINE_INPUT_SKETCH_CATEGORIES: {
+    category: "INPUT",
+    template: "{count} is not a number of categories from 1 to {most}",
+    hint: "keep fewer categories; the others are counted together",
+  },
   MOORLINE_STATE_EMPTY_SKETCH: {
     category: "STATE",
     template: "the sketch holds no finite value",
