@@ -5,7 +5,7 @@ import * as stats from "../src/index.js";
 // Every `@example expression // => value` of the doc blocks is run with the package's exports in scope.
 
 const SOURCE = new URL("../src/", import.meta.url);
-const examples = readdirSync(SOURCE)
+const examples = readdirSync(SOURCE, { recursive: true, encoding: "utf8" })
   .filter((file) => file.endsWith(".ts"))
   .flatMap((file) =>
     [...readFileSync(new URL(file, SOURCE), "utf8").matchAll(/@example (.+?) \/\/ => (.+)/g)].map(

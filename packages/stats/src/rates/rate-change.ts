@@ -57,18 +57,14 @@ export function rateChange(
     production: g,
     difference: g - e,
     interval: [g - e - Math.hypot(g - lowG, highE - e), g - e + Math.hypot(highG - g, e - lowE)],
-    z: rateZ(baseline, production, designEffect),
+    z: rateZ(baseline, production, effectiveEvents(baseline.trials, production.trials, designEffect)),
   };
 }
 
-function rateZ(baseline: RateCounts, production: RateCounts, designEffect: number): number {
+/** The signed-root deviance of production's share against the baseline's, at so many effective events. */
+export function rateZ(baseline: RateCounts, production: RateCounts, effective: number): number {
   const observed = production.events / production.trials;
   // Half an event more keeps the expected share within (0, 1); it must not make a difference where there is none.
   if (observed === baseline.events / baseline.trials) return 0;
-  const expected = (baseline.events + 0.5) / (baseline.trials + 1);
-  return signedRootDeviance(
-    observed,
-    expected,
-    effectiveEvents(baseline.trials, production.trials, designEffect),
-  );
+  return signedRootDeviance(observed, (baseline.events + 0.5) / (baseline.trials + 1), effective);
 }

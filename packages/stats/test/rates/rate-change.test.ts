@@ -2,6 +2,7 @@ import { describe, expect, test } from "vitest";
 import { binomialPValue } from "../../src/rates/binomial-p-value.js";
 import { garwood, poissonTail } from "../../src/rates/garwood.js";
 import { rateChange } from "../../src/rates/rate-change.js";
+import { rateChangePValue } from "../../src/rates/rate-change-p-value.js";
 import { wilson } from "../../src/rates/wilson.js";
 import { Random } from "../kit/random.js";
 
@@ -99,6 +100,40 @@ describe("rateChange(baseline, production)", () => {
       if (rateChange(base, counts(binomial(random, 200, 0.01), 200)).z > 3.0902) passed += 1;
     }
     expect(passed / 4000).toBeLessThanOrEqual(0.0025);
+  });
+});
+
+describe("rateChangePValue(baseline, production)", () => {
+  test("is symmetric in with and without, and 1 for the same share", () => {
+    for (const [b, n, p, m] of [
+      [3, 50, 9, 40],
+      [300, 5000, 90, 900],
+      [0, 100, 2, 7],
+    ] as const) {
+      const with_ = rateChangePValue(counts(b, n), counts(p, m));
+      expect(rateChangePValue(counts(n - b, n), counts(m - p, m))).toBeCloseTo(with_, 12);
+    }
+    expect(rateChangePValue(counts(10, 40), counts(25, 100))).toBe(1);
+    expect(rateChangePValue(counts(0, 9), counts(0, 3))).toBe(1);
+  });
+
+  test("few events prove little: one of one, never seen in 1,000, has p .002", () => {
+    expect(rateChangePValue(counts(0, 1000), counts(1, 1))).toBeCloseTo(2 / 1001, 12);
+    expect(rateChangePValue(counts(0, 1000), counts(3, 3))).toBeCloseTo(2 * (3 / 1003) ** 3, 14);
+  });
+
+  test.each([
+    [0.001, 2000, 500],
+    [0.02, 2000, 300],
+    [0.3, 500, 60],
+  ])("falls below .01 in at most 1.6 %% of 3,000 draws without a change, at a share of %f", (share, n, m) => {
+    const random = new Random(8203);
+    let below = 0;
+    for (let i = 0; i < 3000; i += 1) {
+      const [before, now] = [counts(binomial(random, n, share), n), counts(binomial(random, m, share), m)];
+      if (rateChangePValue(before, now) <= 0.01) below += 1;
+    }
+    expect(below / 3000).toBeLessThanOrEqual(0.016);
   });
 });
 
