@@ -84,7 +84,7 @@ const LEAST_Z = 5;
  * Units       N: decided windows a month.
  * Source      Bonferroni's bound; the margin was fitted to simulations (docs/decision.md).
  *
- * @example criticalZ(2.16e7).toFixed(3) // => "6.355"
+ * @example criticalZ(2.16e7).toFixed(3) // => "6.390"
  */
 export function criticalZ(windowsAMonth: number): number {
   const level = 1 / (LOOKS_A_WINDOW * Math.max(1, windowsAMonth));
