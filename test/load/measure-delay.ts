@@ -3,10 +3,10 @@
 // One-minute windows of 1,000 values, through the code that judges windows in production. Talks on stderr; the last line of stdout is one JSON object.
 import { availableParallelism } from "node:os";
 import { parseArgs } from "node:util";
-import { criticalZ } from "@moorline/stats";
 import { changesFor } from "./decision/changes.js";
 import type { DelayJob } from "./decision/delay-job.js";
 import { modelOf } from "./decision/models.js";
+import { RULE_OF_A_TEAM, VALUES_A_WINDOW } from "./decision/setting.js";
 import { runJobs } from "./decision/worker-pool.js";
 
 const { values: options } = parseArgs({
@@ -17,7 +17,6 @@ const { values: options } = parseArgs({
   },
 });
 const seed = Number(options.seed);
-const zPage = criticalZ(500 * 30 * 1_440);
 const HOUR = 60;
 
 /** Streams with how long a change is waited for. */
@@ -38,7 +37,7 @@ for (const [index, { name, repeats, longest }] of STREAMS.entries()) {
       // Changes begin at every hour of the day.
       const quiet = HOUR + (i % 24) * HOUR;
       const own = seed + 1_000_003 * (index + 1) + 7_919 * i;
-      return { model: name, change, seed: own, thresholdSeed: seed + index, zPage, quiet, longest };
+      return { model: name, change, seed: own, thresholdSeed: seed + index, quiet, longest };
     });
     const file = new URL("./decision/delay-job.ts", import.meta.url);
     const delays = await runJobs<DelayJob, number | null>(file, jobs, () => {});
@@ -58,9 +57,9 @@ for (const [index, { name, repeats, longest }] of STREAMS.entries()) {
 console.log(
   JSON.stringify({
     measure: "delay",
-    valuesAWindow: 1_000,
+    valuesAWindow: VALUES_A_WINDOW,
     windowMinutes: 1,
-    zPage,
+    zPage: RULE_OF_A_TEAM.zPage,
     seed,
     streams,
     node: process.version,

@@ -3,11 +3,11 @@
 // One-minute windows of 1,000 values, through the code that judges windows in production. Talks on stderr; the last line of stdout is one JSON object.
 import { availableParallelism } from "node:os";
 import { parseArgs } from "node:util";
-import { criticalZ, gammaQuantile } from "@moorline/stats";
+import { gammaQuantile } from "@moorline/stats";
 import { modelOf } from "./decision/models.js";
 import type { QuietJob } from "./decision/quiet-job.js";
 import type { QuietRun } from "./decision/run-feature.js";
-import { VALUES_A_WINDOW } from "./decision/simulated-feature.js";
+import { FEATURES_A_TEAM, MONTH_DAYS, RULE_OF_A_TEAM, VALUES_A_WINDOW } from "./decision/setting.js";
 import { runJobs } from "./decision/worker-pool.js";
 
 const { values: options } = parseArgs({
@@ -23,9 +23,6 @@ const seed = Number(options.seed);
 const windows = Number(options.days) * 1_440;
 /** The streams that a goal is set for run at full size. */
 const FULL = new Set(["iid", "ar", "seasonal"]);
-const MONTH_DAYS = 30;
-const FEATURES_A_TEAM = 500;
-const zPage = criticalZ(FEATURES_A_TEAM * MONTH_DAYS * 1_440);
 
 const streams: Record<string, unknown> = {};
 for (const [index, name] of options.streams.split(",").entries()) {
@@ -33,7 +30,7 @@ for (const [index, name] of options.streams.split(",").entries()) {
   const features = Number(FULL.has(name) ? options.features : options["other-features"]);
   const jobs = Array.from({ length: features }, (_, feature): QuietJob => {
     const own = seed + 1_000_003 * (index + 1) + 7_919 * feature;
-    return { model: name, seed: own, thresholdSeed: seed + index, windows, zPage };
+    return { model: name, seed: own, thresholdSeed: seed + index, windows };
   });
   const started = performance.now();
   const runs = await runJobs<QuietJob, QuietRun>(
@@ -69,7 +66,7 @@ console.log(
     measure: "false-pages",
     per,
     ...size,
-    zPage,
+    zPage: RULE_OF_A_TEAM.zPage,
     seed,
     streams,
     node: process.version,

@@ -74,7 +74,15 @@ export { type QuantilePair, type QuantilePairsOptions, quantilePairs } from "./q
 export { type Alternative, binomialPValue } from "./rates/binomial-p-value.js";
 export { garwood, poissonTail } from "./rates/garwood.js";
 export { type RateChange, type RateChangeOptions, type RateCounts, rateChange } from "./rates/rate-change.js";
+export { rateChangePValue } from "./rates/rate-change-p-value.js";
 export { wilson } from "./rates/wilson.js";
+export type { ChangeName } from "./sensitivity/changes.js";
+export {
+  type Sensitivity,
+  type SensitivityInput,
+  sensitivityOf,
+  type VisibleChange,
+} from "./sensitivity/sensitivity.js";
 export { signedRootDeviance } from "./signed-root-deviance.js";
 export { chiSquareExceededBy, chiSquareTail } from "./special/chi-square.js";
 export {

@@ -1,7 +1,7 @@
-import { DEFAULT_DECISION_RULE } from "@moorline/stats";
 import { changesFor } from "./changes.js";
 import { modelOf } from "./models.js";
 import { delayOf } from "./run-feature.js";
+import { RULE_OF_A_TEAM } from "./setting.js";
 import { quantilesOf, thresholdsOf } from "./simulated-feature.js";
 import { answerJobs } from "./worker-pool.js";
 
@@ -11,7 +11,6 @@ export interface DelayJob {
   readonly change: string;
   readonly seed: number;
   readonly thresholdSeed: number;
-  readonly zPage: number;
   readonly quiet: number;
   readonly longest: number;
 }
@@ -20,6 +19,5 @@ answerJobs<DelayJob, number | null>((job) => {
   const model = modelOf(job.model);
   const thresholds = thresholdsOf(model, job.thresholdSeed);
   const change = changesFor(quantilesOf(model, job.thresholdSeed), job.seed + 1)[job.change]!;
-  const rule = { ...DEFAULT_DECISION_RULE, zPage: job.zPage };
-  return delayOf(model, job.seed, rule, thresholds, change, job);
+  return delayOf(model, job.seed, RULE_OF_A_TEAM, thresholds, change, job);
 });

@@ -1,6 +1,6 @@
-import { DEFAULT_DECISION_RULE } from "@moorline/stats";
 import { modelOf } from "./models.js";
 import { type QuietRun, runQuiet } from "./run-feature.js";
+import { RULE_OF_A_TEAM } from "./setting.js";
 import { thresholdsOf } from "./simulated-feature.js";
 import { answerJobs } from "./worker-pool.js";
 
@@ -10,12 +10,10 @@ export interface QuietJob {
   readonly seed: number;
   readonly thresholdSeed: number;
   readonly windows: number;
-  readonly zPage: number;
 }
 
 answerJobs<QuietJob, QuietRun>((job) => {
   const model = modelOf(job.model);
   const thresholds = thresholdsOf(model, job.thresholdSeed);
-  const rule = { ...DEFAULT_DECISION_RULE, zPage: job.zPage };
-  return runQuiet(model, job.seed, rule, thresholds, job.windows);
+  return runQuiet(model, job.seed, RULE_OF_A_TEAM, thresholds, job.windows);
 });

@@ -11,10 +11,10 @@ import {
   Tolerance,
   type WatchedCounts,
 } from "@moorline/stats";
+import { CountsAtThresholds } from "./counts-at-thresholds.js";
+import { MINUTE_MS, VALUES_A_WINDOW } from "./setting.js";
 import type { StreamModel, WindowSource } from "./stream-model.js";
 
-export const MINUTE_MS = 60_000;
-export const VALUES_A_WINDOW = 1_000;
 /** A Monday, midnight. */
 const START_MS = Date.UTC(2026, 0, 5);
 
@@ -23,13 +23,13 @@ export class SimulatedFeature {
   readonly ground: DecisionGround;
   readonly sway: Sway | null;
   readonly source: WindowSource;
-  readonly #counter: ThresholdCounter;
+  readonly #counter: CountsAtThresholds;
   readonly #column = new Float64Array(VALUES_A_WINDOW);
   endMs: number;
 
   constructor(model: StreamModel, seed: number, rule: DecisionRule, thresholds: readonly number[]) {
     this.source = model.start(seed);
-    this.#counter = new ThresholdCounter(thresholds);
+    this.#counter = new CountsAtThresholds(thresholds);
     const minutes = model.baselineMinutes;
     const lengthMs = blockLengthMs(START_MS, START_MS + minutes * MINUTE_MS - 1, MINUTE_MS);
     const blocks = this.#readBlocks(minutes, lengthMs / MINUTE_MS);
@@ -116,40 +116,3 @@ function sortedStretch(model: StreamModel, seed: number): Float64Array {
 }
 
 const TAKEN_EACH = 7;
-
-/** Counts values at or below each of eleven thresholds: a table finds the first threshold that can matter. */
-class ThresholdCounter {
-  readonly #thresholds: Float64Array;
-  readonly #first = new Uint8Array(CELLS + 1);
-  readonly #between = new Uint32Array(12);
-
-  constructor(thresholds: readonly number[]) {
-    this.#thresholds = Float64Array.from([...thresholds, Number.POSITIVE_INFINITY]);
-    for (let cell = 0; cell <= CELLS; cell += 1) {
-      const least = cell === 0 ? Number.NEGATIVE_INFINITY : cell / CELLS_A_UNIT - REACH;
-      this.#first[cell] = this.#thresholds.findIndex((threshold) => threshold >= least);
-    }
-  }
-
-  count(column: Float64Array): WatchedCounts {
-    const between = this.#between.fill(0);
-    const [first, thresholds] = [this.#first, this.#thresholds];
-    for (let i = 0; i < column.length; i += 1) {
-      const x = column[i]!;
-      const cell = x <= -REACH ? 0 : x >= REACH ? CELLS : ((x + REACH) * CELLS_A_UNIT) | 0;
-      let at = first[cell]!;
-      while (x > thresholds[at]!) at += 1;
-      between[at]! += 1;
-    }
-    let sum = 0;
-    const atOrBelow = FROZEN_RANKS.map((_, share) => {
-      sum += between[share]!;
-      return sum;
-    });
-    return { events: column.length, missing: 0, finite: column.length, atOrBelow };
-  }
-}
-
-const REACH = 8;
-const CELLS_A_UNIT = 256;
-const CELLS = 2 * REACH * CELLS_A_UNIT;
