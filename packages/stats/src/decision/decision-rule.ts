@@ -74,17 +74,17 @@ export const DEFAULT_DECISION_RULE: DecisionRule = Object.freeze({
 /** Shares and directions that are looked at in every window: multiplicity within a feature. */
 const LOOKS_A_WINDOW = 24;
 /** What dependence between looks and the law of z far out ask for on top; fitted to month-long simulations. */
-const MARGIN = 0.5;
+const MARGIN = 0.6;
 const LEAST_Z = 5;
 
 /**
  * The |z| that a page asks for when so many windows are decided in a month, over all features, slices and horizons.
  *
- * Definition  Φ⁻¹(1 − 1/(24 N)) + ½, at least 5: about one look in a month would pass by chance, and a margin.
+ * Definition  Φ⁻¹(1 − 1/(24 N)) + .6, at least 5: about one look in a month would pass by chance, and a margin.
  * Units       N: decided windows a month.
  * Source      Bonferroni's bound; the margin was fitted to simulations (docs/decision.md).
  *
- * @example criticalZ(2.16e7).toFixed(3) // => "6.390"
+ * @example criticalZ(2.16e7).toFixed(3) // => "6.490"
  */
 export function criticalZ(windowsAMonth: number): number {
   const level = 1 / (LOOKS_A_WINDOW * Math.max(1, windowsAMonth));

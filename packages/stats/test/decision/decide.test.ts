@@ -69,9 +69,36 @@ describe("decide(memory, window, ground)", () => {
     const decisions = run(repeat(slightlyHeavyUpperTail, 6));
     expect(sentence(decisions[5]!, slightlyHeavyUpperTail())).toBe(
       "upper tail heavier: 2.5 % of values lie above the baseline's p99 (4.593), 2.5 times the baseline's 1.0 %; n = 6,000 over 6 windows; " +
-        "|z| = 8.6, 6.4 makes it adrift; the baseline has too few blocks: its events were taken as independent",
+        "|z| = 8.6, 6.5 is enough; the baseline has too few blocks: its events were taken as independent",
     );
   });
+
+  test.each([
+    {
+      name: "straining in pools",
+      windows: repeat(slightlyHeavyUpperTail, 3),
+      zPage: 7,
+      says: "|z| = 6.4 of the 7.0 that make it adrift",
+    },
+    {
+      name: "straining in one window",
+      windows: [muchHigher()],
+      zPage: 30,
+      says: "not yet in 3 windows on end",
+    },
+    { name: "adrift at once", windows: [muchHigher()], zPage: 6, says: ", far enough at once" },
+  ])(
+    "decisionSentence of a feature that is $name says how far it is from adrift",
+    ({ windows, zPage, says }) => {
+      const ground = assumedGround({
+        ...RULE,
+        zPage,
+        ...(zPage === 30 && { zStrainBelow: 20, zAtOnce: 99 }),
+      });
+      const last = run(windows, ground).at(-1)!;
+      expect(sentence(last, windows.at(-1)!, ground)).toContain(says);
+    },
+  );
 
   test("whyOf has the numbers behind it: tolerance, evidence, what was needed", () => {
     const ground = assumedGround();
