@@ -132,8 +132,9 @@ function unseenCandidate({ unseen, n }: ComparedCategories): Candidate[] {
   return [candidate(place, PARTS * unseen.pValue, difference >= CATEGORY_FLOORS.unseen)];
 }
 
-function wholeCandidate({ totalVariation, g }: ComparedCategories): Candidate {
+/** By Pearson's statistic: its size is nearer to the nominal one than G's (docs/categories.md). */
+function wholeCandidate({ totalVariation, chiSquare }: ComparedCategories): Candidate {
   const difference = totalVariation.beyondNoise;
   const place = { part: "categories", category: null, difference } as const;
-  return candidate(place, PARTS * g.pValue, difference >= CATEGORY_FLOORS.totalVariation);
+  return candidate(place, PARTS * chiSquare.pValue, difference >= CATEGORY_FLOORS.totalVariation);
 }

@@ -64,7 +64,7 @@ export function compareCategories(
 
 function unseenOf(bins: readonly CategoryBin[], n: number, m: number, designEffect: number): UnseenEvents {
   const named = bins.filter(({ category }) => category !== null);
-  const unseen = named.reduce((sum, bin) => sum + (bin.baseline === 0 ? bin.production : 0), 0);
+  const unseen = named.filter(({ baseline }) => baseline === 0).map(({ production }) => production);
   const singletons = named.filter(({ baseline }) => baseline === 1).length;
   return unseenEvents({ n, singletons, m, unseen, designEffect });
 }

@@ -295,15 +295,28 @@ function zipf(kinds: number, random: Random): () => string {
 describe("unseenEvents(input)", () => {
   test("tends to the Poisson tail above m·N₁/n when the baseline is far larger", () => {
     for (const unseen of [3, 10, 25]) {
-      const { pValue, expected } = unseenEvents({ n: 1e9, singletons: 1e7, m: 1000, unseen });
+      const { pValue, expected } = unseenEvents({
+        n: 1e9,
+        singletons: 1e7,
+        m: 1000,
+        unseen: Array<number>(unseen).fill(1),
+      });
       expect(expected).toBeCloseTo(10, 12);
       expect(pValue / poissonTail(unseen, 10)).toBeCloseTo(1, 2);
     }
   });
 
   test("nothing unseen → p 1; one among as many as the baseline has proves nothing", () => {
-    expect(unseenEvents({ n: 10, singletons: 4, m: 10, unseen: 0 }).pValue).toBe(1);
-    expect(unseenEvents({ n: 10, singletons: 0, m: 10, unseen: 1 }).pValue).toBeCloseTo(0.5, 14);
+    expect(unseenEvents({ n: 10, singletons: 4, m: 10, unseen: [] }).pValue).toBe(1);
+    expect(unseenEvents({ n: 10, singletons: 0, m: 10, unseen: [1] }).pValue).toBeCloseTo(0.5, 14);
+  });
+
+  test("events of one category are one surprise, of ten categories ten", () => {
+    const of = (unseen: readonly number[]) => unseenEvents({ n: 1000, singletons: 2, m: 1000, unseen });
+    expect(of([10])).toMatchObject({ events: 10, expected: 2 });
+    expect(of([10]).pValue).toBeGreaterThan(0.3);
+    expect(of(Array<number>(10).fill(1)).pValue).toBeLessThan(0.05);
+    expect(() => of([1001])).toThrow("the event count is 1001 of 1000");
   });
 });
 
