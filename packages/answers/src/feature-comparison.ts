@@ -7,9 +7,10 @@ import {
   type TailExceedance,
   type Verdict,
 } from "@moorline/stats";
+import { type CompanionStatistics, companionStatistics } from "./companion-statistics.js";
 
 /** One feature and slice of `moorline compare --format json`: a contract, fields are only ever added. */
-export interface FeatureComparison {
+export interface FeatureComparison extends CompanionStatistics {
   readonly feature: string;
   readonly kind: "numeric";
   readonly slice: string;
@@ -48,6 +49,7 @@ export function compareFeature(
     tails,
     psi,
     jensenShannon,
+    ...companionStatistics(baseline, production),
     pairs,
   };
 }

@@ -1,5 +1,6 @@
 import { NumericSketch } from "@moorline/sketch";
-import { cdfOf, type NumericSide } from "@moorline/stats";
+import { type CategoryCounts, cdfOf, type NumericSide } from "@moorline/stats";
+import { readCategoryCounts } from "./files/category-counts.js";
 import { DuckdbSession } from "./files/duckdb-session.js";
 import { type FileColumn, listColumns } from "./files/file-columns.js";
 import { matchColumn } from "./files/match-column.js";
@@ -12,6 +13,12 @@ import type { OnProgress } from "./read-progress.js";
 /** Rows up to which a file's values are compared as they are; beyond, through a sketch of this compression. */
 const MOST_EXACT_ROWS = 5_000_000;
 const SKETCH_COMPRESSION = 2_000;
+
+/** Names of columns, by how they are compared. */
+export interface ComparedColumns {
+  readonly numeric: readonly string[];
+  readonly categorical: readonly string[];
+}
 
 /** The columns of files, each as a side of a comparison. */
 export class FileSides {
@@ -44,11 +51,19 @@ export class FileSides {
     return matchColumn(this.columns, { name, path: name.split(".") });
   }
 
-  /** Reads the columns that stand for `features`, and the one to slice by. Every name must be found by `find`. */
-  async load(features: readonly string[], sliceBy: string | null, onProgress?: OnProgress): Promise<void> {
+  /** Reads the columns that are compared, and the one to slice by. Every name must be found by `find`. */
+  async load(
+    { numeric, categorical }: ComparedColumns,
+    sliceBy: string | null,
+    onProgress?: OnProgress,
+  ): Promise<void> {
     const bind = (name: string): BoundColumn => ({ name, column: this.find(name)! });
-    const slices = sliceBy === null ? [] : [bind(sliceBy)];
-    const columns = { features: features.map(bind), slices, time: null };
+    const columns = {
+      features: numeric.map(bind),
+      categories: categorical.map(bind),
+      slices: sliceBy === null ? [] : [bind(sliceBy)],
+      time: null,
+    };
     this.#table = await RowTable.load(this.#session, this.#files, columns, onProgress);
   }
 
@@ -64,10 +79,11 @@ export class FileSides {
     return found.map(([value]) => String(value));
   }
 
-  /** The values of one feature, of all rows or those with one slice value. */
+  /** The values of one numeric column, of all rows or those with one slice value. */
   async side(featureIndex: number, sliceValue: string | null): Promise<NumericSide> {
-    const where = sliceValue === null ? "" : ` where s0 = ${sqlText(sliceValue)}`;
-    const result = await this.#session.connection.stream(`select f${featureIndex} from rows${where}`);
+    const result = await this.#session.connection.stream(
+      `select f${featureIndex} from rows where ${sliceSql(sliceValue)}`,
+    );
     const take = this.rows <= MOST_EXACT_ROWS ? new ExactValues(this.rows) : new SketchedValues();
     for (;;) {
       const chunk = await result.fetchChunk();
@@ -76,9 +92,18 @@ export class FileSides {
     }
   }
 
+  /** The counts of one categorical column, of all rows or those with one slice value; the rarest of very many are in `other`. */
+  async categories(categoryIndex: number, sliceValue: string | null): Promise<CategoryCounts> {
+    return await readCategoryCounts(this.#session, `c${categoryIndex}`, sliceSql(sliceValue));
+  }
+
   async close(): Promise<void> {
     await this.#session.close();
   }
+}
+
+function sliceSql(sliceValue: string | null): string {
+  return sliceValue === null ? "true" : `s0 = ${sqlText(sliceValue)}`;
 }
 
 /** Finite values as they are, the rest counted by kind. */

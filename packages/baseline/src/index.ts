@@ -17,7 +17,7 @@ export {
   buildBaseline,
 } from "./build-baseline.js";
 export { buildWindowBaseline, type WindowBaselineRequest } from "./build-window-baseline.js";
-export { FileSides } from "./file-sides.js";
+export { type ComparedColumns, FileSides } from "./file-sides.js";
 export type { ColumnKind, FileColumn } from "./files/file-columns.js";
 export { findBaseline } from "./find-baseline.js";
 export { HeldFeature } from "./held-feature.js";

@@ -33,10 +33,34 @@ export function textSql(files: TrainingFiles, column: FileColumn): string {
   return `json_extract_string(${sqlName(top!)}, ${sqlText(pointer === "" ? "$" : pointer)})`;
 }
 
-/** The value as a number; null where there is none or it is no number. */
+/** The value as a number, a flag as 0 or 1; null where there is none or it is neither. */
 export function numberSql(files: TrainingFiles, column: FileColumn): string {
   const typed = files.format === "parquet" && (column.kind === "number" || column.kind === "flag");
-  return typed ? `cast(${fieldSql(column)} as double)` : `try_cast(${textSql(files, column)} as double)`;
+  if (typed) return `cast(${fieldSql(column)} as double)`;
+  const number = `try_cast(${textSql(files, column)} as double)`;
+  if (column.kind !== "flag") return number;
+  return `coalesce(${number}, cast(try_cast(${textSql(files, column)} as boolean) as double))`;
+}
+
+/** Longest text, in characters, that is a category as it is; of a longer one the beginning, its length and a hash of the whole. */
+const MOST_CATEGORY_LENGTH = 256;
+
+/**
+ * The value as a category; null where there is none. Numbers and flags are written the same way whatever the format: 1 and 1.0 are one category, true
+ * and TRUE too.
+ */
+export function categorySql(files: TrainingFiles, column: FileColumn): string {
+  const text = textSql(files, column);
+  const plain =
+    column.kind === "number" ? plainNumberSql(text) : column.kind === "flag" ? `lower(${text})` : text;
+  const short = `left(${plain}, 120) || '… (' || length(${plain}) || ' characters, ' || md5(${plain}) || ')'`;
+  return `case when length(${plain}) > ${MOST_CATEGORY_LENGTH} then ${short} else ${plain} end`;
+}
+
+function plainNumberSql(text: string): string {
+  const number = `try_cast(${text} as double)`;
+  const whole = `${number} = floor(${number}) and abs(${number}) < 1e15`;
+  return `coalesce(case when ${whole} then cast(cast(${number} as bigint) as varchar) else cast(${number} as varchar) end, ${text})`;
 }
 
 /** The time as milliseconds since 1970. A number's unit is `unit`, or, where none is given, the one that puts it near our days. */

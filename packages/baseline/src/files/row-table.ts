@@ -3,7 +3,7 @@ import { createReadStream } from "node:fs";
 import { pipeline } from "node:stream/promises";
 import { MoorlineError } from "@moorline/errors";
 import type { OnProgress } from "../read-progress.js";
-import { numberSql, readerSql, textSql, timeSql } from "./column-sql.js";
+import { categorySql, numberSql, readerSql, textSql, timeSql } from "./column-sql.js";
 import type { DuckdbSession } from "./duckdb-session.js";
 import type { FileColumn } from "./file-columns.js";
 import { sqlText } from "./sql-text.js";
@@ -17,6 +17,8 @@ export interface BoundColumn {
 
 export interface RowTableColumns {
   readonly features: readonly BoundColumn[];
+  /** Columns whose values are categories. */
+  readonly categories?: readonly BoundColumn[];
   readonly slices: readonly BoundColumn[];
   readonly time: (BoundColumn & { readonly unit: "iso" | "s" | "ms" | "us" | "ns" }) | null;
 }
@@ -35,7 +37,7 @@ const NO_SLICE_VALUE = "(none)";
 
 /**
  * The wanted columns of the files in a temporary table on disk, in the order of the rows: parsed once, read as often as needed, in
- * batches. Columns are f0, f1, … (features), s0, … (slices), t (time).
+ * batches. Columns are f0, f1, … (features), c0, … (categories), s0, … (slices), t (time).
  */
 export class RowTable {
   readonly session: DuckdbSession;
@@ -93,10 +95,16 @@ export class RowTable {
   }
 }
 
-function createSql(files: TrainingFiles, { features, slices, time }: RowTableColumns): string {
-  const all = [...features, ...slices, ...(time === null ? [] : [time])].map(({ column }) => column);
+function createSql(
+  files: TrainingFiles,
+  { features, categories = [], slices, time }: RowTableColumns,
+): string {
+  const all = [...features, ...categories, ...slices, ...(time === null ? [] : [time])].map(
+    ({ column }) => column,
+  );
   const selected = [
     ...features.map(({ column }, i) => `${numberSql(files, column)} as f${i}`),
+    ...categories.map(({ column }, i) => `${categorySql(files, column)} as c${i}`),
     ...slices.map(
       ({ column }, i) => `coalesce(${textSql(files, column)}, ${sqlText(NO_SLICE_VALUE)}) as s${i}`,
     ),

@@ -39,7 +39,7 @@ export const BASELINE_ERRORS = errorRows({
   },
   MOORLINE_INPUT_COMPARE_NO_FEATURES: {
     category: "INPUT",
-    template: "{baseline} and {production} share no numeric column",
+    template: "{baseline} and {production} share no column of numbers or of text",
     hint: "name the same columns in both files, or say which with --feature",
   },
   MOORLINE_INPUT_WINDOWS_NONE: {

@@ -7,6 +7,7 @@ import { progressBar } from "../terminal/progress-bar.js";
 
 interface CompareOptions {
   readonly feature?: readonly string[];
+  readonly categorical?: readonly string[];
   readonly sliceBy?: string;
   readonly format: string;
 }
@@ -16,11 +17,15 @@ export function addCompareCommand(program: Command, io: CommandIo): void {
     .command("compare")
     .summary("hold one file against another")
     .description(
-      "Holds the numeric columns of a production file against those of a baseline file (CSV, TSV, Parquet, NDJSON; a pattern in quotes reads several files). Ends with 1 when a feature is adrift.",
+      "Holds the columns of a production file against those of a baseline file, numbers by their distribution and text by its categories (CSV, TSV, Parquet, NDJSON; a pattern in quotes reads several files). Ends with 1 when a feature is adrift.",
     )
     .argument("<baseline-file>", "what production should look like")
     .argument("<production-file>", "what came")
-    .option("--feature <names...>", "columns to compare; default: every numeric column that both files have")
+    .option(
+      "--feature <names...>",
+      "columns to compare; default: every numeric and text column that both files have",
+    )
+    .option("--categorical <names...>", "columns to compare by their categories, whatever they hold")
     .option("--slice-by <column>", "also compare apart by each value of this column")
     .option("--format <format>", COMPARE_FORMATS.join(", "), "table")
     .action(async (baseline: string, production: string, options: CompareOptions) => {
@@ -32,6 +37,7 @@ export function addCompareCommand(program: Command, io: CommandIo): void {
           baseline,
           production,
           features: options.feature ?? [],
+          categorical: options.categorical ?? [],
           sliceBy: options.sliceBy ?? null,
           onProgress: bar.onProgress,
           onNote: (sentence) => notes.push(sentence),

@@ -1,21 +1,29 @@
-import { compareFeature, type FeatureComparison } from "@moorline/answers";
-import { type FileColumn, FileSides, type OnProgress } from "@moorline/baseline";
-import { nearestName } from "@moorline/config";
-import { MoorlineError } from "@moorline/errors";
-import type { NumericSide } from "@moorline/stats";
+import {
+  type CategoryComparison,
+  compareCategoryFeature,
+  compareFeature,
+  type FeatureComparison,
+} from "@moorline/answers";
+import { FileSides, type OnProgress } from "@moorline/baseline";
+import { chooseColumns } from "./choose-columns.js";
+
+/** One column and slice, by the kind of the column. */
+export type ComparedColumn = FeatureComparison | CategoryComparison;
 
 /** What `moorline compare --format json` prints. */
 export interface FileComparison {
   readonly baseline: { readonly source: string; readonly rows: number };
   readonly production: { readonly source: string; readonly rows: number };
-  readonly features: readonly FeatureComparison[];
+  readonly features: readonly ComparedColumn[];
 }
 
 export interface CompareFilesRequest {
   readonly baseline: string;
   readonly production: string;
-  /** Empty: every numeric column that both have. */
+  /** Empty: every numeric and text column that both have. */
   readonly features: readonly string[];
+  /** Columns to compare as categories, whatever they hold. */
+  readonly categorical: readonly string[];
   readonly sliceBy: string | null;
   readonly onProgress?: OnProgress | undefined;
   /** Told what is left out, in a sentence. */
@@ -45,18 +53,27 @@ async function compareSides(
   production: FileSides,
   request: CompareFilesRequest,
 ): Promise<FileComparison> {
-  const features = chooseFeatures(baseline, production, request);
-  if (request.sliceBy !== null) requireColumn(request.sliceBy, baseline, production);
-  for (const sides of [baseline, production]) await sides.load(features, request.sliceBy, request.onProgress);
-  const compared: FeatureComparison[] = [];
-  for (const [index, feature] of features.entries()) {
-    for (const value of await sliceValues(baseline, production, request)) {
+  const chosen = chooseColumns(baseline, production, request);
+  const namesOf = (kind: ComparedColumn["kind"]) =>
+    chosen.filter((column) => column.kind === kind).map(({ name }) => name);
+  const columns = { numeric: namesOf("numeric"), categorical: namesOf("categorical") };
+  for (const sides of [baseline, production]) await sides.load(columns, request.sliceBy, request.onProgress);
+  const values = await sliceValues(baseline, production, request);
+  const compared: ComparedColumn[] = [];
+  for (const { name, kind } of chosen) {
+    const index = columns[kind].indexOf(name);
+    for (const value of values) {
       const slice = value === null ? "all" : `${request.sliceBy}=${value}`;
-      const sides: [NumericSide, NumericSide] = [
-        await baseline.side(index, value),
-        await production.side(index, value),
-      ];
-      compared.push(compareFeature(feature, slice, ...sides));
+      if (kind === "numeric") {
+        const sides = [await baseline.side(index, value), await production.side(index, value)] as const;
+        compared.push(compareFeature(name, slice, ...sides));
+      } else {
+        const sides = [
+          await baseline.categories(index, value),
+          await production.categories(index, value),
+        ] as const;
+        compared.push(compareCategoryFeature(name, slice, ...sides));
+      }
     }
   }
   return {
@@ -80,45 +97,4 @@ async function sliceValues(
     onNote?.(`${sliceBy} has more than ${MOST_SLICES} values: the most frequent ones are compared`);
   }
   return [null, ...values.slice(0, MOST_SLICES)];
-}
-
-function chooseFeatures(
-  baseline: FileSides,
-  production: FileSides,
-  request: CompareFilesRequest,
-): readonly string[] {
-  if (request.features.length > 0) {
-    for (const feature of request.features) requireColumn(feature, baseline, production);
-    return request.features;
-  }
-  const { sliceBy, onNote } = request;
-  const both = baseline.columns
-    .map(nameOf)
-    .filter((name) => name !== sliceBy && production.find(name) !== null);
-  const numeric = both.filter((name) => isNumeric(baseline.find(name)) && isNumeric(production.find(name)));
-  const other = both.filter((name) => !numeric.includes(name));
-  if (other.length > 0) onNote?.(`not compared, for they are not numeric: ${other.join(", ")}`);
-  if (numeric.length > 0) return numeric;
-  throw new MoorlineError("MOORLINE_INPUT_COMPARE_NO_FEATURES", {
-    baseline: request.baseline,
-    production: request.production,
-  });
-}
-
-function requireColumn(name: string, ...sides: readonly FileSides[]): void {
-  for (const side of sides) {
-    if (side.find(name) !== null) continue;
-    const columns = side.columns.map(nameOf);
-    const near = nearestName(name, columns);
-    const meant = near === null ? "" : ` (did you mean ${near}?)`;
-    throw new MoorlineError("MOORLINE_INPUT_COMPARE_FEATURE", { file: side.source, name, meant, columns });
-  }
-}
-
-function isNumeric(column: FileColumn | null): boolean {
-  return column !== null && (column.kind === "number" || column.kind === "flag");
-}
-
-function nameOf(column: FileColumn): string {
-  return column.path.join(".");
 }

@@ -7,11 +7,17 @@ export function textTable(head: readonly string[], rows: readonly (readonly stri
   return `${table.toString()}\n`;
 }
 
-/** A Markdown table; bars in cells are escaped. */
+/** A Markdown table; what would be markup in cells is escaped. */
 export function markdownTable(head: readonly string[], rows: readonly (readonly string[])[]): string {
-  const line = (cells: readonly string[]) =>
-    `| ${cells.map((cell) => visible(cell).replaceAll("|", "\\|")).join(" | ")} |`;
+  const line = (cells: readonly string[]) => `| ${cells.map(markdownText).join(" | ")} |`;
   return `${[line(head), line(head.map(() => "---")), ...rows.map(line)].join("\n")}\n`;
+}
+
+/** Text in Markdown: neither markup nor HTML of the data takes effect. Underscores within words are none and stay. */
+export function markdownText(text: string): string {
+  return visible(text)
+    .replace(/[\\`*[\]<>|&]/g, "\\$&")
+    .replace(/(?<!\p{L}|\p{N})_|_(?!\p{L}|\p{N})/gu, "\\_");
 }
 
 /** Names may come from data: control characters are made visible. */

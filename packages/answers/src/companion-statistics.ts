@@ -1,0 +1,56 @@
+import {
+  type AndersonDarling,
+  andersonDarling,
+  type ChanceLevel,
+  decileBins,
+  jensenShannonNoise,
+  type NumericSide,
+  populationStabilityNoise,
+  type RateChange,
+  rateChange,
+  rateChangePValue,
+  type WassersteinChange,
+  wassersteinChange,
+} from "@moorline/stats";
+
+/** What stands beside a comparison: tests and chance levels that decide nothing. Null where a side has nothing to compute them from. */
+export interface CompanionStatistics {
+  readonly andersonDarling: AndersonDarling | null;
+  /** Of `wasserstein.distance`: what chance makes of it, and its 95 % interval where it is more than that. */
+  readonly wassersteinNoise: Omit<WassersteinChange, "distance"> | null;
+  readonly psiNoise: ChanceLevel | null;
+  readonly jensenShannonNoise: ChanceLevel | null;
+  readonly missingChange: (RateChange & { readonly pValue: number }) | null;
+}
+
+/** The companions of a numeric comparison. */
+export function companionStatistics(baseline: NumericSide, production: NumericSide): CompanionStatistics {
+  return { ...ofValues(baseline, production), missingChange: missingChangeOf(baseline, production) };
+}
+
+function ofValues(
+  { cdf: baseline }: NumericSide,
+  { cdf: production }: NumericSide,
+): Omit<CompanionStatistics, "missingChange"> {
+  if (baseline.n === 0 || production.n === 0) {
+    return { andersonDarling: null, wassersteinNoise: null, psiNoise: null, jensenShannonNoise: null };
+  }
+  const level = { bins: decileBins(baseline, production).length, n: baseline.n, m: production.n };
+  const { noise, aboveNoise, interval } = wassersteinChange(baseline, production);
+  return {
+    andersonDarling: andersonDarling(baseline, production),
+    wassersteinNoise: { noise, aboveNoise, interval },
+    psiNoise: populationStabilityNoise(level),
+    jensenShannonNoise: jensenShannonNoise(level),
+  };
+}
+
+function missingChangeOf(
+  baseline: NumericSide,
+  production: NumericSide,
+): CompanionStatistics["missingChange"] {
+  if (baseline.events === 0 || production.events === 0) return null;
+  const before = { events: baseline.missing, trials: baseline.events };
+  const now = { events: production.missing, trials: production.events };
+  return { ...rateChange(before, now), pValue: rateChangePValue(before, now) };
+}
