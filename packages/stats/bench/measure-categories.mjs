@@ -129,7 +129,50 @@ function measure({ kinds, n, m }) {
   return row;
 }
 
+/** Verdicts on named changes: 50 Zipf categories, baseline 100,000, so many events each. */
+const CHANGES = {
+  "6 points from the first category to the second": (counts, m) => moveEvents(counts, 0, 1, 0.06 * m),
+  "2 % of events in a new category": (counts, m) => takeForNew(counts, 0.02 * m),
+  "a category of 1.6 % is gone": (counts) => moveEvents(counts, 10, 0, counts[10]),
+  "every second category down by 30 %": (counts) => {
+    for (let k = 1; k < counts.length; k += 2) moveEvents(counts, k, k - 1, 0.3 * counts[k]);
+    return counts;
+  },
+  "3 points from the first category to the second": (counts, m) => moveEvents(counts, 0, 1, 0.03 * m),
+};
+
+function moveEvents(counts, from, to, events) {
+  const moved = Math.min(counts[from], Math.round(events));
+  counts[from] -= moved;
+  counts[to] += moved;
+  return counts;
+}
+
+function takeForNew(counts, events) {
+  const longer = Uint32Array.from([...counts, 0]);
+  return moveEvents(longer, 0, longer.length - 1, events);
+}
+
+function detect(m) {
+  const uniform = generator(seed + m);
+  const draw = zipf(50, uniform);
+  const names = Array.from({ length: 51 }, (_, i) => `c${i}`);
+  const repeats = Math.ceil(draws / 10);
+  const states = {};
+  for (const [name, change] of Object.entries(CHANGES)) {
+    const found = { holding: 0, straining: 0, adrift: 0, thin: 0 };
+    for (let i = 0; i < repeats; i += 1) {
+      const compared = compareCategories(sideOf(draw(100_000), names), sideOf(change(draw(m), m), names));
+      found[categoricalVerdict(compared).state] += 1 / repeats;
+    }
+    states[name] = Object.fromEntries(Object.entries(found).map(([state, share]) => [state, round(share)]));
+    console.error(`m=${m} ${name}: ${JSON.stringify(states[name])}`);
+  }
+  return { kinds: 50, n: 100_000, m, repeats, states };
+}
+
 const started = performance.now();
+const changes = [1000, 5000].map(detect);
 const rows = [
   { kinds: 50, n: 100_000, m: 1000 },
   { kinds: 1000, n: 100_000, m: 1000 },
@@ -146,6 +189,7 @@ console.log(
     draws,
     seed,
     rows,
+    changes,
     seconds: Math.round((performance.now() - started) / 1000),
     versions: { node: process.version, stats: version },
   }),

@@ -234,11 +234,11 @@ describe("categoricalVerdict(comparison)", () => {
       side(
         Object.fromEntries(Array.from({ length: 40 }, (_, i) => [`c${i}`, 500 + (i % 2 ? shift : -shift)])),
       );
-    const judged = verdict(counts(0), counts(60));
+    const judged = verdict(counts(0), counts(90));
     expect(judged.state).toBe("adrift");
     expect(judged.place).toMatchObject({ part: "categories", category: null });
     expect(judged.sentence).toMatch(
-      /^categories shared out differently: 6\.0 % of values lie in other categories than in the baseline, chance alone makes \d\.\d+ %; n = 20,000$/,
+      /^categories shared out differently: 9\.0 % of values lie in other categories than in the baseline, chance alone makes \d\.\d+ %; n = 20,000$/,
     );
   });
 
