@@ -71,6 +71,9 @@ const tail = z
   })
   .loose();
 
+const interval = z.array(z.number()).length(2);
+const chanceLevel = z.object({ expected: z.number(), upper95: z.number(), upper99: z.number() });
+
 export const pairsAnswer = z
   .object({
     stream: z.string(),
@@ -99,12 +102,53 @@ export const pairsAnswer = z
     tails: z.object({ lower: tail.nullable(), upper: tail.nullable() }).nullable(),
     psi: maybe,
     jensenShannon: maybe,
+    andersonDarling: z
+      .object({ statistic: z.number(), standardised: z.number(), pValue: z.number() })
+      .nullable(),
+    wassersteinNoise: z
+      .object({ noise: z.number(), aboveNoise: z.boolean(), interval: interval.nullable() })
+      .nullable(),
+    psiNoise: chanceLevel.nullable(),
+    jensenShannonNoise: chanceLevel.nullable(),
+    missingChange: z
+      .object({ difference: z.number(), interval, z: z.number(), pValue: z.number() })
+      .loose()
+      .nullable(),
     pairs: z.array(
       z.object({ rank: z.number(), baseline: maybe, production: maybe, low: maybe, high: maybe }).loose(),
     ),
     caution: z.string(),
   })
   .loose();
+
+export const sensitivity = z.object({
+  stream: z.string(),
+  slice: z.string(),
+  baseline: z.object({ id: z.string() }),
+  power: z.number(),
+  features: z.array(
+    z.object({
+      feature: z.string(),
+      unit: z.string().nullable(),
+      horizon: z.string(),
+      windowMs: z.number(),
+      eventsPerWindow: z.number(),
+      eventsFrom: z.enum(["given", "stored windows", "the baseline"]),
+      baselineSlice: z.string(),
+      tolerance: z.object({ basis: z.enum(["time", "rows", "assumed"]), seasonal: z.boolean() }),
+      needed: z.object({ adrift: z.number(), straining: z.number() }),
+      changes: z.array(
+        z.object({
+          change: z.string(),
+          kind: z.enum(["move", "factor", "share"]),
+          visible: z.array(z.object({ windows: z.number(), size: z.number(), inDeviations: maybe })),
+        }),
+      ),
+      blindRanks: z.array(z.number()),
+    }),
+  ),
+  caution: z.string(),
+});
 
 export const timeline = z.object({
   stream: z.string(),
