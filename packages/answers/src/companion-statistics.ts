@@ -9,6 +9,7 @@ import {
   type RateChange,
   rateChange,
   rateChangePValue,
+  TAIL_RANGES,
   type WassersteinChange,
   wassersteinChange,
 } from "@moorline/stats";
@@ -16,6 +17,8 @@ import {
 /** What stands beside a comparison: tests and chance levels that decide nothing. Null where a side has nothing to compute them from. */
 export interface CompanionStatistics {
   readonly andersonDarling: AndersonDarling | null;
+  /** Over ranks .001 to .05 and .95 to .999: severity of a tail that no single record decides. */
+  readonly wassersteinTails: { readonly lower: WassersteinChange; readonly upper: WassersteinChange } | null;
   /** Of `wasserstein.distance`: what chance makes of it, and its 95 % interval where it is more than that. */
   readonly wassersteinNoise: Omit<WassersteinChange, "distance"> | null;
   readonly psiNoise: ChanceLevel | null;
@@ -33,13 +36,23 @@ function ofValues(
   { cdf: production }: NumericSide,
 ): Omit<CompanionStatistics, "missingChange"> {
   if (baseline.n === 0 || production.n === 0) {
-    return { andersonDarling: null, wassersteinNoise: null, psiNoise: null, jensenShannonNoise: null };
+    return {
+      andersonDarling: null,
+      wassersteinNoise: null,
+      wassersteinTails: null,
+      psiNoise: null,
+      jensenShannonNoise: null,
+    };
   }
   const level = { bins: decileBins(baseline, production).length, n: baseline.n, m: production.n };
   const { noise, aboveNoise, interval } = wassersteinChange(baseline, production);
   return {
     andersonDarling: andersonDarling(baseline, production),
     wassersteinNoise: { noise, aboveNoise, interval },
+    wassersteinTails: {
+      lower: wassersteinChange(baseline, production, { range: TAIL_RANGES.lower }),
+      upper: wassersteinChange(baseline, production, { range: TAIL_RANGES.upper }),
+    },
     psiNoise: populationStabilityNoise(level),
     jensenShannonNoise: jensenShannonNoise(level),
   };

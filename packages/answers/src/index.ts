@@ -2,3 +2,10 @@ export { type CategoryComparison, compareCategoryFeature } from "./category-comp
 export type { CompanionStatistics } from "./companion-statistics.js";
 export { compareFeature, type FeatureComparison } from "./feature-comparison.js";
 export { type PairsAnswer, type PairsRequest, readPairs, type TimeRange } from "./read-pairs.js";
+export {
+  type FeatureSensitivity,
+  readSensitivity,
+  type SensitivityAnswer,
+  type SensitivityRequest,
+} from "./read-sensitivity.js";
+export { type RehearsalAnswer, type RehearsalRequest, type RehearsedPage, rehearse } from "./rehearse.js";

@@ -1,10 +1,10 @@
-import { findBaseline, loadBaselineSide, sideOfSketch } from "@moorline/baseline";
+import { loadBaselineSide, sideOfSketch } from "@moorline/baseline";
 import type { FeatureConfig, StreamConfig } from "@moorline/config";
-import { MoorlineError } from "@moorline/errors";
 import { NumericSketch } from "@moorline/sketch";
 import type { NumericSide } from "@moorline/stats";
 import type { Store } from "@moorline/store";
 import { type RangeSketch, readRange } from "@moorline/windows";
+import { activeBaselineId } from "./active-baseline.js";
 import { compareFeature, type FeatureComparison } from "./feature-comparison.js";
 
 export interface TimeRange {
@@ -68,16 +68,9 @@ async function heldAgainst(request: PairsRequest, closedThroughMs: number): Prom
     const range = await rangeOf(request, against, closedThroughMs);
     return { side: sideOf(range), baseline: null, against: isoRange(range), amended: range.amended };
   }
-  const id = await baselineIdOf(request);
+  const id = await activeBaselineId(store, request.stream, request.baseline);
   const found = await loadBaselineSide(store, id, slice, feature.name);
   return { side: found.side, baseline: { id, slice: found.slice }, against: null, amended: false };
-}
-
-async function baselineIdOf({ store, stream, baseline }: PairsRequest): Promise<string> {
-  if (baseline !== null) return (await findBaseline(store, stream.name, baseline)).id;
-  const active = await store.baselines.active(stream.name);
-  if (active !== null) return active.baselineId;
-  throw new MoorlineError("MOORLINE_STATE_BASELINE_NOT_ACTIVE", { stream: stream.name });
 }
 
 function rangeOf(request: PairsRequest, range: TimeRange, closedThroughMs: number): Promise<RangeSketch> {

@@ -17,6 +17,7 @@ describe("compareFeature(feature, slice, baseline, production)", () => {
     expect([aboveNoise, noise > 0 && noise < compared.wasserstein!.distance]).toEqual([true, true]);
     expect(interval![0]).toBeLessThan(compared.wasserstein!.distance);
     expect(interval![1]).toBeGreaterThan(compared.wasserstein!.distance);
+    expect(compared.wassersteinTails!.upper).toMatchObject({ aboveNoise: true });
     expect(compared.psi).toBeGreaterThan(compared.psiNoise!.upper99);
     expect(compared.jensenShannon).toBeGreaterThan(compared.jensenShannonNoise!.upper99);
     expect(compared.missingChange!.difference).toBeCloseTo(30 / 330 - 4 / 404, 12);
@@ -29,6 +30,7 @@ describe("compareFeature(feature, slice, baseline, production)", () => {
       state: "thin",
       andersonDarling: null,
       wassersteinNoise: null,
+      wassersteinTails: null,
       psiNoise: null,
       jensenShannonNoise: null,
       missingChange: { baseline: 0, production: 1, difference: 1 },

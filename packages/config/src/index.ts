@@ -4,6 +4,7 @@ export { ENV_OVERRIDES, type Environment, type EnvOverride } from "./env-overrid
 export { findFeature, findStream } from "./find-stream.js";
 export { configJsonSchema, type JsonSchemaNode } from "./json-schema.js";
 export { loadConfig, type ParseConfigOptions, parseConfig } from "./load-config.js";
+export { loadTolerances } from "./load-tolerances.js";
 export type * from "./moorline-config.js";
 export { nearestName } from "./nearest-name.js";
 export { parsePath } from "./path-segments.js";

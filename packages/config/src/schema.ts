@@ -112,7 +112,7 @@ const slice = z
   ])
   .meta({ title: "name or {key, path}" });
 
-const decision = z.strictObject({
+export const DECISION_SCHEMA = z.strictObject({
   persistence: whole(1, 24, 3, "Blocks of windows beyond tolerance in a row that make a feature `adrift`."),
   releaseAfter: whole(1, 1_000, 3, "Windows within tolerance in a row that make it `holding` again."),
   bodyFloor: z
@@ -171,7 +171,7 @@ const stream = z.strictObject({
     .nullable()
     .default("30d")
     .describe("Event times further behind the wall clock are dead-lettered; `null` takes any from 1990 on."),
-  decision: decision.prefault({}).describe("When a difference counts."),
+  decision: DECISION_SCHEMA.prefault({}).describe("When a difference counts."),
 });
 
 export const CONFIG_SCHEMA = z

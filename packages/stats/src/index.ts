@@ -43,7 +43,7 @@ export type { Evidence } from "./decision/evidence.js";
 export { NO_REPLAY, type Replay, replayBaseline } from "./decision/replay.js";
 export { type SideCounts, sideCounts } from "./decision/side-counts.js";
 export { type Why, whyOf } from "./decision/why.js";
-export { windowCounts } from "./decision/window-counts.js";
+export { countWindow, windowCounts } from "./decision/window-counts.js";
 export { BAND_CRITICAL, type BandConfidence, type ShareRange, shareRange } from "./deviance-band.js";
 export { effectiveEvents } from "./effective-events.js";
 export { type EventsAt, eventsAt } from "./events-at.js";
@@ -76,6 +76,7 @@ export { garwood, poissonTail } from "./rates/garwood.js";
 export { type RateChange, type RateChangeOptions, type RateCounts, rateChange } from "./rates/rate-change.js";
 export { rateChangePValue } from "./rates/rate-change-p-value.js";
 export { wilson } from "./rates/wilson.js";
+export { blindRanks } from "./sensitivity/blind-ranks.js";
 export type { ChangeName } from "./sensitivity/changes.js";
 export {
   type Sensitivity,

@@ -5,8 +5,10 @@ import { addBaselineCommand } from "./commands/baseline.js";
 import { addCheckCommand } from "./commands/check.js";
 import { addCompareCommand } from "./commands/compare.js";
 import { addPairsCommand } from "./commands/pairs.js";
+import { addRehearseCommand } from "./commands/rehearse.js";
 import { addRulesCommand } from "./commands/rules.js";
 import { addRunCommand } from "./commands/run.js";
+import { addSensitivityCommand } from "./commands/sensitivity.js";
 import type { CommandIo, ExitStatus } from "./terminal/command-io.js";
 import { reportError } from "./terminal/report-error.js";
 
@@ -36,6 +38,8 @@ function programOf(io: CommandIo): Command {
   addBaselineCommand(program, io);
   addCompareCommand(program, io);
   addPairsCommand(program, io);
+  addSensitivityCommand(program, io);
+  addRehearseCommand(program, io);
   addAuditCommand(program, io);
   addCheckCommand(program, io);
   addRulesCommand(program, io);

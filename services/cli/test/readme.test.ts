@@ -17,13 +17,16 @@ describe("the README of the command", () => {
     }
   });
 
-  it.each(["compare", "pairs", "audit", "run"])("names every option of %s", async (command) => {
-    const { out } = await moorline([command, "--help"]);
-    const options = [...out.matchAll(/^ {2}(--[a-z-]+)/gm)].map((found) => found[1]!);
-    expect(options.length).toBeGreaterThan(1);
-    const named = rows.filter((row) => row.startsWith(`| \`${command} `)).join("\n");
-    // Said once for all commands below the table.
-    const common = new Set(["--config", "--help"]);
-    expect(options.filter((option) => !common.has(option) && !named.includes(option))).toEqual([]);
-  });
+  it.each(["compare", "pairs", "sensitivity", "rehearse", "audit", "run"])(
+    "names every option of %s",
+    async (command) => {
+      const { out } = await moorline([command, "--help"]);
+      const options = [...out.matchAll(/^ {2}(--[a-z-]+)/gm)].map((found) => found[1]!);
+      expect(options.length).toBeGreaterThan(1);
+      const named = rows.filter((row) => row.startsWith(`| \`${command} `)).join("\n");
+      // Said once for all commands below the table.
+      const common = new Set(["--config", "--help"]);
+      expect(options.filter((option) => !common.has(option) && !named.includes(option))).toEqual([]);
+    },
+  );
 });

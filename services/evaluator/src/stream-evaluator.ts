@@ -1,4 +1,5 @@
 import { setImmediate as nextTurn } from "node:timers/promises";
+import { streamRule } from "@moorline/baseline";
 import type { StreamConfig } from "@moorline/config";
 import type {
   EvaluationCommit,
@@ -17,7 +18,6 @@ import { panePlan } from "./pane-plan.js";
 import { silenceChange } from "./silence.js";
 import { StateBook } from "./state-book.js";
 import { StreamGauges } from "./stream-gauges.js";
-import { streamRule } from "./stream-rule.js";
 import { watermark } from "./watermark.js";
 
 /** Panes closed before the tick looks again at what is pending. */

@@ -50,6 +50,47 @@ async function problemOf(response: Response): Promise<{ status: number; detail: 
   return problem;
 }
 
+describe("sensitivity", () => {
+  it("tells the smallest changes that page, with what they rest on, and a caution", async () => {
+    const answer = (await (
+      await get(`/v1/streams/${STREAM}/sensitivity?feature=cargo_temp`)
+    ).json()) as Record<string, unknown>;
+    expect(answer).toMatchObject({
+      stream: "chill-risk",
+      slice: "all",
+      baseline: { id: BASELINE_ID },
+      power: 0.9,
+      caution: expect.stringContaining("not proof"),
+    });
+    const features = answer["features"] as { horizon: string; eventsPerWindow: number; changes: object[] }[];
+    // A hundred events a pane; the baseline has no blocks.
+    expect(features.map(({ horizon, eventsPerWindow }) => [horizon, eventsPerWindow])).toEqual([
+      ["5m", 500],
+      ["1h", 6_000],
+    ]);
+    expect(features[0]).toMatchObject({
+      unit: "°C",
+      eventsFrom: "stored windows",
+      tolerance: { basis: "assumed", seasonal: false },
+    });
+    expect(features[0]!.changes[0]).toMatchObject({
+      change: "higher",
+      kind: "move",
+      visible: [{ windows: 3 }, {}],
+    });
+  });
+
+  it.each([
+    ["eventsPerWindow=0", 400],
+    ["eventsPerWindow=many", 400],
+    ["feature=nothing", 404],
+    ["baseline=zzz", 404],
+  ])("refuses %s with %d", async (query, status) => {
+    const response = await get(`/v1/streams/${STREAM}/sensitivity?${query}`);
+    expect((await problemOf(response)).status).toBe(status);
+  });
+});
+
 describe("quantile-pairs", () => {
   it("answers exactly what the values of the range say, with n, window, baseline and slice", async () => {
     const answer = (await (await get(`${FEATURE}/quantile-pairs?${RANGE}`)).json()) as Record<
@@ -246,6 +287,7 @@ describe("/v1/openapi.json", () => {
       "/v1/streams": "/v1/streams",
       "/v1/streams/{stream}": `/v1/streams/${STREAM}`,
       "/v1/streams/{stream}/features": `/v1/streams/${STREAM}/features`,
+      "/v1/streams/{stream}/sensitivity": `/v1/streams/${STREAM}/sensitivity`,
       "/v1/streams/{stream}/features/{feature}/quantile-pairs": `${FEATURE}/quantile-pairs?${RANGE}`,
       "/v1/streams/{stream}/features/{feature}/timeline": `${FEATURE}/timeline?${RANGE}`,
       "/v1/streams/{stream}/baselines": `/v1/streams/${STREAM}/baselines`,

@@ -1,7 +1,8 @@
 import { FROZEN_RANKS } from "../grid-ranks.js";
 import type { NumericComparison } from "../numeric-comparison.js";
+import type { NumericSide } from "../numeric-side.js";
 import type { WatchedCounts } from "../sway/watched-counts.js";
-import { nearestTo } from "../threshold-shares.js";
+import { nearestTo, type ThresholdShare, thresholdShares } from "../threshold-shares.js";
 
 /**
  * The counts of a compared window that the decision works on.
@@ -15,13 +16,27 @@ export function windowCounts(comparison: NumericComparison): WatchedCounts {
     events: events.production,
     missing: Math.round((missing.production ?? 0) * events.production),
     finite: n.production,
-    atOrBelow:
-      shares.length === 0
-        ? new Array<number>(FROZEN_RANKS.length).fill(0)
-        : shares.map((share) =>
-            share.rankError === 0
-              ? share.events
-              : nearestTo(share.expected, share.observed, share.rankError) * n.production,
-          ),
+    atOrBelow: countsAtThresholds(shares, n.production),
   };
+}
+
+/** The same counts without the rest of a comparison: what a rehearsal of thousands of windows works on. */
+export function countWindow(baseline: NumericSide, production: NumericSide): WatchedCounts {
+  const m = production.cdf.n;
+  const compared = baseline.cdf.n > 0 && m > 0;
+  return {
+    events: production.events,
+    missing: production.missing,
+    finite: m,
+    atOrBelow: countsAtThresholds(compared ? thresholdShares(baseline, production) : [], m),
+  };
+}
+
+function countsAtThresholds(shares: readonly ThresholdShare[], finite: number): readonly number[] {
+  if (shares.length === 0) return new Array<number>(FROZEN_RANKS.length).fill(0);
+  return shares.map((share) =>
+    share.rankError === 0
+      ? share.events
+      : nearestTo(share.expected, share.observed, share.rankError) * finite,
+  );
 }

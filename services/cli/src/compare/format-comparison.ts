@@ -14,7 +14,8 @@ export function formatComparison(comparison: FileComparison, format: CompareForm
   ];
   if (format === "markdown") {
     const lines = comparison.features.map(
-      (r) => `- **${visible(r.feature)}** (${visible(r.slice)}): ${r.state}: ${markdownText(r.reading)}`,
+      (r) =>
+        `- **${markdownText(r.feature)}** (${markdownText(r.slice)}): ${r.state}: ${markdownText(r.reading)}`,
     );
     const heads = sides.map((side) => `- ${side.replace(/ {2,}/, ": ")}`).join("\n");
     return `${heads}\n\n${tablesOf(comparison, markdownTable)}\n${lines.join("\n")}\n`;

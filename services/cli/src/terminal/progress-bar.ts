@@ -33,3 +33,30 @@ export function progressBar(io: CommandIo): { readonly onProgress: OnProgress | 
     stop: () => bar.stop(),
   };
 }
+
+/** A bar over feature-slice series; `option` is empty where standard error is no terminal. */
+export function seriesBar(
+  io: CommandIo,
+  stage: string,
+): { readonly option: { onProgress?: (done: number, series: number) => void }; stop(): void } {
+  if (!io.isTerminal) return { option: {}, stop: () => undefined };
+  const bar = new SingleBar(
+    {
+      stream: process.stderr,
+      clearOnComplete: true,
+      hideCursor: true,
+      format: `${stage} [{bar}] {value} of {total} features and slices, {eta_formatted} left`,
+    },
+    Presets.shades_classic,
+  );
+  bar.start(1, 0);
+  return {
+    option: {
+      onProgress: (done, series) => {
+        bar.setTotal(series);
+        bar.update(done);
+      },
+    },
+    stop: () => bar.stop(),
+  };
+}

@@ -72,6 +72,12 @@ const tail = z
   .loose();
 
 const interval = z.array(z.number()).length(2);
+const wassersteinChange = z.object({
+  distance: z.number(),
+  noise: z.number(),
+  aboveNoise: z.boolean(),
+  interval: interval.nullable(),
+});
 const chanceLevel = z.object({ expected: z.number(), upper95: z.number(), upper99: z.number() });
 
 export const pairsAnswer = z
@@ -105,9 +111,8 @@ export const pairsAnswer = z
     andersonDarling: z
       .object({ statistic: z.number(), standardised: z.number(), pValue: z.number() })
       .nullable(),
-    wassersteinNoise: z
-      .object({ noise: z.number(), aboveNoise: z.boolean(), interval: interval.nullable() })
-      .nullable(),
+    wassersteinNoise: wassersteinChange.omit({ distance: true }).nullable(),
+    wassersteinTails: z.object({ lower: wassersteinChange, upper: wassersteinChange }).nullable(),
     psiNoise: chanceLevel.nullable(),
     jensenShannonNoise: chanceLevel.nullable(),
     missingChange: z

@@ -73,6 +73,19 @@ export const timelineQuery = z.object({
   slice: slice.optional(),
 });
 
+export const sensitivityQuery = z.object({
+  feature: name.optional(),
+  slice: slice.optional(),
+  baseline: name
+    .optional()
+    .openapi({ description: "Id of a baseline, or the start of one; default: the active one" }),
+  eventsPerWindow: z.coerce
+    .number()
+    .positive()
+    .optional()
+    .openapi({ description: "Events in a window of the shortest horizon; default: as many as came last" }),
+});
+
 export const logbookQuery = z.object({
   stream: name.optional(),
   kind: z

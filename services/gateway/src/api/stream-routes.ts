@@ -1,8 +1,10 @@
+import { readSensitivity } from "@moorline/answers";
 import { featureRows } from "../answers/feature-rows.js";
 import { streamSummary } from "../answers/stream-summary.js";
-import { streamOf } from "../gateway-context.js";
+import { featureOf, streamOf } from "../gateway-context.js";
 import * as answers from "./answer-schemas.js";
-import { featuresQuery, streamParams } from "./query-schemas.js";
+import { CAUTION } from "./caution.js";
+import { featuresQuery, sensitivityQuery, streamParams } from "./query-schemas.js";
 import { json, route } from "./route.js";
 
 export const STREAM_ROUTES = [
@@ -39,6 +41,28 @@ export const STREAM_ROUTES = [
       const stream = streamOf(context, params.stream);
       const filter = Object.fromEntries(Object.entries(query).filter(([, value]) => value !== undefined));
       return json({ stream: stream.name, features: await featureRows(context.store, stream, filter) });
+    },
+  }),
+  route({
+    method: "get",
+    path: "/v1/streams/{stream}/sensitivity",
+    summary: "For each feature and horizon the smallest changes that would page, and how soon",
+    params: streamParams,
+    query: sensitivityQuery,
+    answer: answers.sensitivity,
+    types: ["application/json"],
+    handle: async (context, { params, query }) => {
+      const stream = streamOf(context, params.stream);
+      const { feature, slice, baseline, eventsPerWindow } = query;
+      const answer = await readSensitivity({
+        store: context.store,
+        stream,
+        features: feature === undefined ? stream.features : [featureOf(stream, feature)],
+        slice: slice ?? "all",
+        baseline: baseline ?? null,
+        eventsPerWindow: eventsPerWindow ?? null,
+      });
+      return json({ ...answer, caution: CAUTION });
     },
   }),
 ];
