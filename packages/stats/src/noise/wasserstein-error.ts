@@ -25,18 +25,20 @@ export function wassersteinError(
   { range = { from: 0, to: 1 }, designEffect = 1 }: WassersteinChangeOptions = {},
 ): number {
   const sides = [new Influence(range, baseline.n), new Influence(range, production.n)] as const;
+  const from = new Float64Array(2);
+  const to = new Float64Array(2);
   let x = Number.NaN;
-  const before = [0, 0];
   walkUnion([baseline, production], ({ value, below, upTo }) => {
+    to[0] = below[0]! / baseline.n;
+    to[1] = below[1]! / production.n;
     if (!Number.isNaN(x)) {
       const width = Math.min(value - x, Number.MAX_VALUE);
-      const f0 = before[0]! / baseline.n;
-      const g0 = before[1]! / production.n;
-      crossPiece(sides, width, [f0, g0], [below[0]! / baseline.n, below[1]! / production.n], range);
+      if (from[0] === to[0] && from[1] === to[1]) crossFlat(sides, width, from);
+      else crossPiece(sides, width, from, to, range);
     }
     for (const s of [0, 1] as const) {
       sides[s].jump((upTo[s]! - below[s]!) / sides[s].n);
-      before[s] = upTo[s]!;
+      from[s] = upTo[s]! / sides[s].n;
     }
     x = value;
   });
@@ -46,12 +48,19 @@ export function wassersteinError(
   return Number.isFinite(error) ? error : Number.MAX_VALUE;
 }
 
+/** A piece on which neither CDF rises: between two values of exact samples. */
+function crossFlat(sides: readonly [Influence, Influence], width: number, at: Float64Array): void {
+  const step = Math.sign(at[0]! - at[1]!) * width;
+  sides[0].move(step, at[0]!, 0);
+  sides[1].move(step, at[1]!, 0);
+}
+
 /** Cuts a piece on which both CDFs are straight where they cross and where they enter or leave the range. */
 function crossPiece(
   sides: readonly [Influence, Influence],
   width: number,
-  from: readonly [f: number, g: number],
-  to: readonly [f: number, g: number],
+  from: Float64Array,
+  to: Float64Array,
   range: RankRange,
 ): void {
   const cuts = [0, 1];
@@ -59,20 +68,20 @@ function crossPiece(
     const t = (level - start) / (end - start);
     if (t > 0 && t < 1) cuts.push(t);
   };
-  cutAt(from[0] - from[1], to[0] - to[1], 0);
+  cutAt(from[0]! - from[1]!, to[0]! - to[1]!, 0);
   for (const s of [0, 1] as const) {
-    cutAt(from[s], to[s], range.from);
-    cutAt(from[s], to[s], range.to);
+    cutAt(from[s]!, to[s]!, range.from);
+    cutAt(from[s]!, to[s]!, range.to);
   }
   cuts.sort((a, b) => a - b);
   for (let i = 1; i < cuts.length; i += 1) {
     const share = cuts[i]! - cuts[i - 1]!;
     const middle = (cuts[i]! + cuts[i - 1]!) / 2;
-    const f = from[0] + (to[0] - from[0]) * middle;
-    const g = from[1] + (to[1] - from[1]) * middle;
+    const f = from[0]! + (to[0]! - from[0]!) * middle;
+    const g = from[1]! + (to[1]! - from[1]!) * middle;
     const step = Math.sign(f - g) * width * share;
-    sides[0].move(step, f, (to[0] - from[0]) * share);
-    sides[1].move(step, g, (to[1] - from[1]) * share);
+    sides[0].move(step, f, (to[0]! - from[0]!) * share);
+    sides[1].move(step, g, (to[1]! - from[1]!) * share);
   }
 }
 

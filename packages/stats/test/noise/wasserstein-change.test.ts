@@ -8,6 +8,7 @@ import { TAIL_RANGES, wassersteinNoise } from "../../src/noise/wasserstein-noise
 import { wasserstein1 } from "../../src/wasserstein1.js";
 import { Random } from "../kit/random.js";
 import { PROPERTY, samples, slopingViews } from "../kit/samples.js";
+import { stepped } from "../kit/stepped-view.js";
 
 const FAMILIES = [
   { name: "normal", draw: (r: Random) => r.normal() },
@@ -119,6 +120,22 @@ describe("wassersteinError(baseline, production)", () => {
         expect(Math.abs(wassersteinError(cdfOf(a), cdfOf(b)) - expected)).toBeLessThanOrEqual(1e-6 * scale);
       }),
       PROPERTY,
+    );
+  });
+
+  test("of sloping views is the limit of finer and finer steps, over all ranks and over a range", () => {
+    fc.assert(
+      fc.property(slopingViews, slopingViews, (a, b) => {
+        for (const range of [
+          { from: 0, to: 1 },
+          { from: 0.3, to: 0.8 },
+        ]) {
+          const fine = wassersteinError(stepped(a, 4000), stepped(b, 4000), { range });
+          const scale = (a.values.at(-1)! - a.values[0]! + b.values.at(-1)! - b.values[0]!) / Math.sqrt(a.n);
+          expect(Math.abs(wassersteinError(a, b, { range }) - fine)).toBeLessThanOrEqual(2e-3 * scale + 1e-9);
+        }
+      }),
+      { ...PROPERTY, numRuns: 60 },
     );
   });
 
