@@ -1,6 +1,10 @@
 import { MoorlineError } from "@moorline/errors";
 import { normalExceededBy } from "../special/normal.js";
 
+const DEFAULT_CONFIDENCE = 0.95;
+/** Solved once: a column may have a hundred thousand categories, each with limits on both sides. */
+const DEFAULT_Z = normalExceededBy((1 - DEFAULT_CONFIDENCE) / 2);
+
 /**
  * Wilson's score interval for a share.
  *
@@ -16,10 +20,10 @@ import { normalExceededBy } from "../special/normal.js";
 export function wilson(
   events: number,
   trials: number,
-  confidence = 0.95,
+  confidence = DEFAULT_CONFIDENCE,
 ): readonly [low: number, high: number] {
   requireCounts(events, trials);
-  const z = normalExceededBy((1 - confidence) / 2);
+  const z = confidence === DEFAULT_CONFIDENCE ? DEFAULT_Z : normalExceededBy((1 - confidence) / 2);
   const p = events / trials;
   const square = (z * z) / trials;
   const middle = p + square / 2;
