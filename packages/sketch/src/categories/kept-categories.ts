@@ -15,7 +15,8 @@ interface Kept {
 export class KeptCategories {
   readonly limit: number;
   readonly #byName = new Map<string, Kept>();
-  #last: Kept | null = null;
+  /** A binary heap: each entry stands before neither of its two below, so the first is the last by hash. */
+  readonly #heap: Kept[] = [];
 
   constructor(limit: number) {
     this.limit = limit;
@@ -31,7 +32,7 @@ export class KeptCategories {
 
   /** The greatest hash that is kept; null when nothing is. */
   get greatestHash(): number | null {
-    return this.#lastKept()?.hash ?? null;
+    return this.#heap[0]?.hash ?? null;
   }
 
   get(name: string): number | undefined {
@@ -50,14 +51,16 @@ export class KeptCategories {
   admit(name: string, count: number): number {
     const entry: Kept = { name, hash: categoryHash(name), count };
     if (!this.full) {
-      this.#put(entry);
+      this.#byName.set(name, entry);
+      this.#raiseFrom(this.#heap.push(entry) - 1);
       return 0;
     }
-    const last = this.#lastKept();
-    if (last === null || !isBefore(entry, last)) return count;
+    const last = this.#heap[0]!;
+    if (!isBefore(entry, last)) return count;
     this.#byName.delete(last.name);
-    this.#last = null;
-    this.#put(entry);
+    this.#byName.set(name, entry);
+    this.#heap[0] = entry;
+    this.#sink();
     return last.count;
   }
 
@@ -65,18 +68,32 @@ export class KeptCategories {
     for (const { name, count } of this.#byName.values()) yield [name, count];
   }
 
-  #put(entry: Kept): void {
-    this.#byName.set(entry.name, entry);
-    if (this.#last !== null && isBefore(this.#last, entry)) this.#last = entry;
+  #raiseFrom(start: number): void {
+    let at = start;
+    while (at > 0) {
+      const above = (at - 1) >> 1;
+      if (!isBefore(this.#heap[above]!, this.#heap[at]!)) return;
+      this.#swap(above, at);
+      at = above;
+    }
   }
 
-  /** Sought only after one was let go: of K categories about limit·ln(K/limit) are taken in late. */
-  #lastKept(): Kept | null {
-    if (this.#last !== null) return this.#last;
-    for (const entry of this.#byName.values()) {
-      if (this.#last === null || isBefore(this.#last, entry)) this.#last = entry;
+  #sink(): void {
+    let at = 0;
+    for (;;) {
+      let next = 2 * at + 1;
+      if (next >= this.#heap.length) return;
+      if (next + 1 < this.#heap.length && isBefore(this.#heap[next]!, this.#heap[next + 1]!)) next++;
+      if (!isBefore(this.#heap[at]!, this.#heap[next]!)) return;
+      this.#swap(at, next);
+      at = next;
     }
-    return this.#last;
+  }
+
+  #swap(a: number, b: number): void {
+    const entry = this.#heap[a]!;
+    this.#heap[a] = this.#heap[b]!;
+    this.#heap[b] = entry;
   }
 }
 
