@@ -32,8 +32,8 @@ export interface RateChangeOptions {
  *             baseline's count, at the effective events M.
  * Shape       trials > 0 on both sides.
  * Units       shares in [0, 1], difference in [−1, 1], z in standard deviations.
- * Accuracy    coverage of the interval .949–.952 for shares of .001 to .2 and 200 to 1,000 trials; one-sided size of z at a nominal .001:
- *             .0007–.0012, where the pooled z-test has .0086 (docs/rate-change.md).
+ * Accuracy    coverage of the interval .952–.959 for shares of .001 to .2 and 200 to 1,000 trials; one-sided size of z at a nominal .001:
+ *             at most .0013, where the pooled z-test has .0086 (docs/rate-change.md).
  * Edges       none on both sides → difference 0, interval around it, z 0; all of one and none of the other → −1 or 1, finite z.
  * Source      Newcombe 1998, doi:10.1002/(SICI)1097-0258(19980430)17:8<873::AID-SIM779>3.0.CO;2-I.
  *
