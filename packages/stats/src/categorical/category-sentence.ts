@@ -9,7 +9,9 @@ import { categoryInWords } from "./category-in-words.js";
  * For example: new category "north-2": 3.2 % of values, none in the baseline's 40,000; n = 12,000
  */
 export function categorySentence(place: CategoryPlace, comparison: CategoricalComparison): string {
-  return `${placeInWords(place, comparison)}; n = ${countInWords(comparison.n.production)}`;
+  // Missing values are a share of everything that came, the others of what has a value.
+  const of = place.part === "missing" ? comparison.events : comparison.n;
+  return `${placeInWords(place, comparison)}; n = ${countInWords(of.production)}`;
 }
 
 function placeInWords(

@@ -213,7 +213,7 @@ describe("categoricalVerdict(comparison)", () => {
       name: "more missing values",
       production: side({ north: 6000, south: 3000, east: 900, west: 100 }, 400),
       state: "adrift",
-      sentence: "more missing values: 3.8 % of events carry no value, the baseline has 0.99 %; n = 10,000",
+      sentence: "more missing values: 3.8 % of events carry no value, the baseline has 0.99 %; n = 10,400",
     },
   ] as const;
   test.each(rows)("$name → $state", ({ production, state, sentence }) => {
@@ -225,8 +225,14 @@ describe("categoricalVerdict(comparison)", () => {
     expect(verdict(BASE, side({}, 200))).toMatchObject({
       state: "adrift",
       place: { part: "missing", category: null },
-      sentence: "more missing values: 100.0 % of events carry no value, the baseline has 0.99 %; n = 0",
+      sentence: "more missing values: 100.0 % of events carry no value, the baseline has 0.99 %; n = 200",
     });
+  });
+
+  test("values of categories that are not kept, where there were none → adrift as a whole", () => {
+    const judged = verdict(BASE, side({ north: 4800, south: 2400, east: 720, west: 80 }, 0, 2000));
+    expect(judged.state).toBe("adrift");
+    expect(verdict(side({ north: 6000 }, 0, 4000), side({ north: 600 }, 0, 400)).state).toBe("holding");
   });
 
   test("many small shifts that no category shows by itself → adrift as a whole", () => {
