@@ -229,7 +229,7 @@ describe("categoricalVerdict(comparison)", () => {
     });
   });
 
-  test("values of categories that are not kept, where there were none → adrift as a whole", () => {
+  test("values of categories that are not kept, where there were none → adrift", () => {
     const judged = verdict(BASE, side({ north: 4800, south: 2400, east: 720, west: 80 }, 0, 2000));
     expect(judged.state).toBe("adrift");
     expect(verdict(side({ north: 6000 }, 0, 4000), side({ north: 600 }, 0, 400)).state).toBe("holding");
