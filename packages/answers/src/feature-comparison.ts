@@ -4,6 +4,8 @@ import {
   type NumericComparison,
   type NumericSide,
   type QuantilePair,
+  type Reading,
+  readPattern,
   type TailExceedance,
   type Verdict,
 } from "@moorline/stats";
@@ -15,7 +17,9 @@ export interface FeatureComparison extends CompanionStatistics {
   readonly kind: "numeric";
   readonly slice: string;
   readonly state: Verdict["state"];
+  /** What the comparison amounts to, with what its pattern amounts to where there is one. */
   readonly reading: string;
+  readonly pattern: Reading;
   readonly n: NumericComparison["n"];
   readonly missing: NumericComparison["missing"];
   readonly ks: NumericComparison["ks"];
@@ -32,16 +36,19 @@ export function compareFeature(
   slice: string,
   baseline: NumericSide,
   production: NumericSide,
+  unit: string | null = null,
 ): FeatureComparison {
   const comparison = compareNumeric(baseline, production);
   const { state, sentence } = compareVerdict(comparison);
+  const pattern = readPattern(baseline, production, { unit });
   const { n, missing, ks, wasserstein, tails, psi, jensenShannon, pairs } = comparison;
   return {
     feature,
     kind: "numeric",
     slice,
     state,
-    reading: sentence,
+    reading: withPattern(state, sentence, pattern),
+    pattern,
     n,
     missing,
     ks,
@@ -53,3 +60,15 @@ export function compareFeature(
     pairs,
   };
 }
+
+/** A pattern is told of what is off; where all holds, or too little is known, it would be one word too many. */
+function withPattern(
+  state: Verdict["state"],
+  sentence: string,
+  { kind, sentence: pattern }: Reading,
+): string {
+  const isOff = state === "adrift" || state === "straining";
+  return isOff && !UNTOLD.has(kind) ? `${sentence}. The pairs read: ${pattern}` : sentence;
+}
+
+const UNTOLD: ReadonlySet<Reading["kind"]> = new Set(["none", "thin", "cannot tell", "shape"]);

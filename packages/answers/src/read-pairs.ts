@@ -47,7 +47,7 @@ export async function readPairs(request: PairsRequest): Promise<PairsAnswer> {
   const production = await rangeOf(request, request.range, closedThroughMs);
   const held = await heldAgainst(request, closedThroughMs);
   return {
-    ...compareFeature(feature.name, slice, held.side, sideOf(production)),
+    ...compareFeature(feature.name, slice, held.side, sideOf(production), feature.unit),
     stream: stream.name,
     unit: feature.unit,
     window: isoRange(production),

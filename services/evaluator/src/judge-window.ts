@@ -16,6 +16,7 @@ import { type RangeSketch, readRange } from "@moorline/windows";
 import type { BaselineSides, HeldAgainst } from "./baseline-sides.js";
 import type { DueWindow } from "./due-windows.js";
 import type { FreshRollups, SeriesQuery } from "./fresh-rollups.js";
+import { patternOf } from "./window-pattern.js";
 
 export interface SeriesWindow {
   readonly window: DueWindow;
@@ -71,11 +72,15 @@ export function judgeWindow(
     const state = stateRow(place, at, "thin", before, baselines.id, null, sentence);
     return { evaluation: null, state, figures: {} };
   }
-  const comparison = compareWindow(range, against);
+  const production = sideOfSketch(range.sketch ?? new NumericSketch());
+  const comparison = compareNumeric(against.held.side, production);
   const ground = against.held.ground(at.window.endMs - at.window.startMs, rule);
   const counts = windowCounts(comparison);
   const decision = decide(memoryOf(before, baselines.id), { counts, endMs: at.window.endMs }, ground);
-  const sentence = decisionSentence(decision, counts, ground);
+  const unit = stream.features.find(({ name }) => name === at.feature)?.unit ?? null;
+  const pattern = patternOf(decision, production, against.held, ground, unit);
+  const decided = decisionSentence(decision, counts, ground);
+  const sentence = pattern === null ? decided : `${decided}. The window reads: ${pattern.sentence}`;
   const state = stateRow(place, at, decision.state, before, baselines.id, decision.memory, sentence);
   return {
     evaluation: {
@@ -93,6 +98,7 @@ export function judgeWindow(
     figures: {
       place: decision.memory.place,
       why: whyOf(decision, ground),
+      pattern,
       rule,
       n: comparison.n,
       exactCounts: comparison.exactCounts,

@@ -89,6 +89,12 @@ export const pairsAnswer = z
     slice: z.string(),
     state,
     reading: z.string(),
+    pattern: z.object({
+      kind: z.string(),
+      sentence: z.string(),
+      runnerUp: z.string().nullable(),
+      figures: z.record(z.string(), z.number()),
+    }),
     window: range,
     baseline: z.object({ id: z.string(), slice: z.string() }).nullable(),
     against: range.nullable(),
