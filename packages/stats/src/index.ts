@@ -44,6 +44,7 @@ export { NO_REPLAY, type Replay, replayBaseline } from "./decision/replay.js";
 export { type SideCounts, sideCounts } from "./decision/side-counts.js";
 export { type Why, whyOf } from "./decision/why.js";
 export { countWindow, windowCounts } from "./decision/window-counts.js";
+export { type DesignEffect, designEffectAt } from "./design-effect.js";
 export { BAND_CRITICAL, type BandConfidence, type ShareRange, shareRange } from "./deviance-band.js";
 export { effectiveEvents } from "./effective-events.js";
 export { type EventsAt, eventsAt } from "./events-at.js";

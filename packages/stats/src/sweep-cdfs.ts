@@ -1,5 +1,5 @@
 import type { CdfView } from "./cdf-view.js";
-import { eventsBetween } from "./walk-union.js";
+import { eventsUpTo } from "./walk-union.js";
 
 /** What one pass over the union of two CDFs' knots yields. */
 export interface CdfSweep {
@@ -24,37 +24,52 @@ export interface CdfSweep {
 export function sweepCdfs(baseline: CdfView, production: CdfView): CdfSweep {
   const { values: av, below: ab, upTo: au, n: an } = baseline;
   const { values: bv, below: bb, upTo: bu, n: bn } = production;
+  const [aEnd, bEnd] = [av.length, bv.length];
   // Over the common denominator: for exact views the numerators are whole, so the distance has one rounding.
   const pairs = an * bn;
+  const share = 1 / pairs;
   let i = 0;
   let j = 0;
-  let distance = 0;
+  let greatest = 0;
   let at = Math.min(av[0]!, bv[0]!);
   let sign = 0;
   let area = 0;
   let previousX = at;
   let previous = 0;
-  while (i < av.length || j < bv.length) {
-    const x = i === av.length ? bv[j]! : j === bv.length ? av[i]! : Math.min(av[i]!, bv[j]!);
-    const onA = i < av.length && av[i] === x;
-    const onB = j < bv.length && bv[j] === x;
-    const betweenA = onA ? 0 : eventsBetween(baseline, i, x);
-    const betweenB = onB ? 0 : eventsBetween(production, j, x);
-    const left = ((onB ? bb[j]! : betweenB) * an - (onA ? ab[i]! : betweenA) * bn) / pairs;
-    const right = ((onB ? bu[j]! : betweenB) * an - (onA ? au[i]! : betweenA) * bn) / pairs;
+  while (i < aEnd || j < bEnd) {
+    const a = i < aEnd ? av[i]! : Number.POSITIVE_INFINITY;
+    const b = j < bEnd ? bv[j]! : Number.POSITIVE_INFINITY;
+    const x = Math.min(a, b);
+    let left: number;
+    let right: number;
+    if (a === b) {
+      left = bb[j]! * an - ab[i]! * bn;
+      right = bu[j]! * an - au[i]! * bn;
+      i += 1;
+      j += 1;
+    } else if (a < b) {
+      const between = eventsUpTo(bv, bb, bu, j, x) * an;
+      left = between - ab[i]! * bn;
+      right = between - au[i]! * bn;
+      i += 1;
+    } else {
+      const between = eventsUpTo(av, ab, au, i, x) * bn;
+      left = bb[j]! * an - between;
+      right = bu[j]! * an - between;
+      j += 1;
+    }
     const further = Math.abs(right) > Math.abs(left) ? right : left;
-    if (Math.abs(further) > distance) {
-      distance = Math.abs(further);
+    if (Math.abs(further) > greatest) {
+      greatest = Math.abs(further);
       at = x;
       sign = Math.sign(further);
     }
-    area += pieceArea(previousX, x, previous, left);
+    const height = left * share;
+    area += pieceArea(previousX, x, previous, height);
     previousX = x;
-    previous = right;
-    if (onA) i += 1;
-    if (onB) j += 1;
+    previous = right * share;
   }
-  return { distance, at, sign, area: Math.min(area, Number.MAX_VALUE) };
+  return { distance: greatest / pairs, at, sign, area: Math.min(area, Number.MAX_VALUE) };
 }
 
 /** Area under the absolute value of a line from (x0, d0) to (x1, d1). Free of overflow but for an area that has none. */

@@ -44,9 +44,27 @@ export function walkUnion(views: readonly CdfView[], visit: (knot: UnionKnot) =>
 }
 
 /** Events of a view up to x, which lies strictly between its knots `next` − 1 and `next`. */
-export function eventsBetween(view: CdfView, next: number, x: number): number {
+export function eventsBetween({ values, below, upTo }: CdfView, next: number, x: number): number {
+  return eventsUpTo(values, below, upTo, next, x);
+}
+
+/** The same of a view's arrays: what is called for every knot of a sweep. */
+export function eventsUpTo(
+  values: Float64Array,
+  below: Float64Array,
+  upTo: Float64Array,
+  next: number,
+  x: number,
+): number {
   if (next === 0) return 0;
-  const from = view.upTo[next - 1]!;
-  if (next === view.values.length || view.below[next] === from) return from;
-  return from + (view.below[next]! - from) * positionBetween(x, view.values[next - 1]!, view.values[next]!);
+  const from = upTo[next - 1]!;
+  if (next === values.length) return from;
+  const rise = below[next]! - from;
+  if (rise === 0) return from;
+  const start = values[next - 1]!;
+  const width = values[next]! - start;
+  return (
+    from +
+    rise * (width < Number.POSITIVE_INFINITY ? (x - start) / width : positionBetween(x, start, values[next]!))
+  );
 }
