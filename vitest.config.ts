@@ -25,7 +25,7 @@ export default defineConfig({
         test: {
           // What crosses packages, against real parts: one file at a time, for they share two cores and a broker.
           name: "whole",
-          include: ["test/{oracle,journeys,browser,lint,chaos}/**/*.test.ts"],
+          include: ["test/{oracle,journeys,browser,lint,chaos,load}/**/*.test.ts"],
           testTimeout: 300_000,
           hookTimeout: 300_000,
           fileParallelism: false,

@@ -37,12 +37,16 @@ const HORIZONS = [
 ] as const;
 const ROUNDS = 5;
 
-function sketchOf(
-  values: number,
-  sketchOptions: ConstructorParameters<typeof NumericSketch>[0],
-): NumericSketch {
+function columnOf(values: number): Float64Array {
   const column = new Float64Array(values);
   random.fillNormal(column);
+  return column;
+}
+
+function sketchOf(
+  column: Float64Array,
+  sketchOptions: ConstructorParameters<typeof NumericSketch>[0],
+): NumericSketch {
   const sketch = new NumericSketch(sketchOptions);
   sketch.addColumn(column);
   return sketch;
@@ -83,9 +87,7 @@ for (let feature = 0; feature < features; feature += 1) {
   const baseline = sideOfSketch(sketchOf(column, { compression: 500, thresholds: counted }));
   const counts = sideCounts(baseline);
   for (const horizon of HORIZONS) {
-    const production = sideOfSketch(
-      sketchOf(horizon.values, { thresholds: { id: "b", values: [...thresholds] } }),
-    );
+    const production = sideOfSketch(sketchOf(columnOf(horizon.values), { thresholds: counted }));
     const tolerance = new Tolerance({ baseline: counts, sway, windowMs: horizon.ms });
     const ground = { tolerance, rule: RULE_OF_A_TEAM, replay: () => NO_REPLAY, thresholds };
     series.push({ baseline, production, horizon, ground });

@@ -1,4 +1,5 @@
 import type { CdfView } from "./cdf-view.js";
+import { type DesignEffect, designEffectAt } from "./design-effect.js";
 import { BAND_CRITICAL, type BandConfidence, shareRange } from "./deviance-band.js";
 import { effectiveEvents } from "./effective-events.js";
 import { logFactorial } from "./log-gamma.js";
@@ -31,17 +32,18 @@ export function countRange(
   baseline: CdfView,
   production: CdfView,
   rank: number,
-  options: { readonly confidence: BandConfidence; readonly designEffect: number },
+  options: { readonly confidence: BandConfidence; readonly designEffect: DesignEffect },
 ): CountRange {
   const [n, m] = [Math.round(baseline.n), Math.round(production.n)];
   const beyond = Math.min(n, m) * Math.min(rank, 1 - rank);
-  if (beyond < EXACT_BELOW && options.designEffect === 1) {
+  const designEffect = designEffectAt(options.designEffect, rank);
+  if (beyond < EXACT_BELOW && designEffect === 1) {
     const level = LEVELS[options.confidence];
     if (rank <= 0.5) return exactRange(n, m, rank, level);
     const mirrored = exactRange(n, m, 1 - rank, level);
     return { lowest: m - mirrored.highest, highest: m - mirrored.lowest };
   }
-  const effective = effectiveEvents(baseline.n, production.n, options.designEffect);
+  const effective = effectiveEvents(baseline.n, production.n, designEffect);
   const share = shareRange(rank, effective, BAND_CRITICAL[options.confidence]);
   return {
     lowest: Math.max(0, Math.ceil(production.n * share.low - COUNT_SLACK)),

@@ -1,6 +1,7 @@
 import { MoorlineError } from "@moorline/errors";
 import type { CdfView } from "./cdf-view.js";
 import { type CountRange, countRange } from "./count-range.js";
+import type { DesignEffect } from "./design-effect.js";
 import type { BandConfidence } from "./deviance-band.js";
 import { GRID_RANKS } from "./grid-ranks.js";
 import { quantileOf, valueAtEvents } from "./quantile-of.js";
@@ -23,7 +24,8 @@ export interface QuantilePairsOptions {
   readonly ranks?: readonly number[];
   /** Of the whole band, over all ranks at once. Default .999. */
   readonly confidence?: BandConfidence;
-  readonly designEffect?: number;
+  /** Default 1: independent events. */
+  readonly designEffect?: DesignEffect;
 }
 
 /**

@@ -1,6 +1,7 @@
 import { MoorlineError } from "@moorline/errors";
 import type { CdfView } from "./cdf-view.js";
 import { clopperPearson } from "./clopper-pearson.js";
+import { type DesignEffect, designEffectAt } from "./design-effect.js";
 import { effectiveEvents } from "./effective-events.js";
 import { eventsAt } from "./events-at.js";
 import type { ThresholdCounts } from "./numeric-side.js";
@@ -37,7 +38,8 @@ export interface TailExceedanceInput {
     readonly baseline?: ThresholdCounts | null | undefined;
     readonly production?: ThresholdCounts | null | undefined;
   };
-  readonly designEffect?: number;
+  /** Default 1: independent events. */
+  readonly designEffect?: DesignEffect;
 }
 
 /**
@@ -64,7 +66,7 @@ export function tailExceedance(input: TailExceedanceInput): TailExceedance {
   const { share: expected, inclusive } = baselineShare(input, threshold);
   const { events, exactCount } = productionEvents(input, threshold, inclusive);
   const exceedance = events / production.n;
-  const trials = effectiveEvents(baseline.n, production.n, input.designEffect);
+  const trials = effectiveEvents(baseline.n, production.n, designEffectAt(input.designEffect, rank));
   const [low, high] = clopperPearson(Math.min(trials, exceedance * trials), trials);
   return {
     rank,
