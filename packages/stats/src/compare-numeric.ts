@@ -1,5 +1,7 @@
 import { decileBins } from "./decile-bins.js";
+import { type DesignEffect, designEffectAt } from "./design-effect.js";
 import type { BandConfidence } from "./deviance-band.js";
+import { FROZEN_RANKS, partOfRank } from "./grid-ranks.js";
 import { ksOfSweep } from "./ks-distance.js";
 import { ksPValue } from "./ks-p-value.js";
 import type { ComparedNumeric, NumericComparison, ThinNumeric } from "./numeric-comparison.js";
@@ -7,6 +9,7 @@ import type { NumericSide } from "./numeric-side.js";
 import { jensenShannonDistance, populationStabilityIndex } from "./population-stability.js";
 import { quantilePairs } from "./quantile-pairs.js";
 import { sweepCdfs } from "./sweep-cdfs.js";
+import { reaches, TAIL_SUPPORT, tailDivergence } from "./tail-divergence/tail-divergence.js";
 import { type TailExceedance, tailExceedance } from "./tail-exceedance.js";
 import { countAt, thresholdShares, thresholdsOf } from "./threshold-shares.js";
 import { wassersteinScale } from "./wasserstein-scale.js";
@@ -14,6 +17,8 @@ import { wassersteinScale } from "./wasserstein-scale.js";
 export interface CompareOptions {
   /** Of the band around the quantile pairs. Default .999. */
   readonly confidence?: BandConfidence;
+  /** Of dependence between events, for band, p-value and tail intervals. Default 1: independent. */
+  readonly designEffect?: DesignEffect;
 }
 
 /**
@@ -40,14 +45,18 @@ export function compareNumeric(
     ...countsOf(baseline, production),
     thin: false,
     reason: null,
-    ks: { ...ksOfSweep(sweep), pValue: pValueOf(sweep.distance, baseline, production) },
+    ks: { ...ksOfSweep(sweep), pValue: pValueOf(sweep.distance, baseline, production, options.designEffect) },
     wasserstein: {
       distance: sweep.area,
       scaled: scale === null ? null : Math.min(sweep.area / scale, Number.MAX_VALUE),
     },
     tails: {
-      lower: headlineTail(baseline, production, "lower"),
-      upper: headlineTail(baseline, production, "upper"),
+      lower: headlineTail(baseline, production, "lower", options.designEffect),
+      upper: headlineTail(baseline, production, "upper", options.designEffect),
+    },
+    tailRanks: {
+      lower: tailDivergence(baseline, production, "lower", options),
+      upper: tailDivergence(baseline, production, "upper", options),
     },
     psi: populationStabilityIndex(bins),
     jensenShannon: jensenShannonDistance(bins),
@@ -58,28 +67,38 @@ export function compareNumeric(
 }
 
 /** Sketch error can feign a distance: what the two sketches may be off by, at worst mid-distribution, is taken off before the test. */
-function pValueOf(distance: number, baseline: NumericSide, production: NumericSide): number {
+function pValueOf(
+  distance: number,
+  baseline: NumericSide,
+  production: NumericSide,
+  effect: DesignEffect | undefined,
+): number {
   const error = baseline.cdf.rankErrorAt(0.5) + production.cdf.rankErrorAt(0.5);
   return ksPValue({
     distance: Math.min(1, Math.max(0, distance - error)),
     n: baseline.cdf.n,
     m: production.cdf.n,
+    designEffect: largestInBody(effect),
     samples: [baseline.cdf, production.cdf],
   });
 }
 
-/** Events that a baseline must have beyond a rank for its tail to be spoken of. */
-const TAIL_SUPPORT = 5;
+/** The KS distance is decided in the body, at a rank not known beforehand: the largest effect there is the safe one. */
+function largestInBody(effect: DesignEffect | undefined): number {
+  const body = FROZEN_RANKS.filter((rank) => partOfRank(rank) === "body");
+  return Math.max(...body.map((rank) => designEffectAt(effect, rank)));
+}
+
 const HEADLINE_RANKS = { lower: [0.01, 0.05, 0.1, 0.25], upper: [0.99, 0.95, 0.9, 0.75] } as const;
 
 function headlineTail(
   baseline: NumericSide,
   production: NumericSide,
   tail: "lower" | "upper",
+  designEffect: DesignEffect = 1,
 ): TailExceedance | null {
-  const beyond = (rank: number) => Math.min(rank, 1 - rank) * (1 + 1e-12);
   const rank = HEADLINE_RANKS[tail].find(
-    (r) => baseline.cdf.n * beyond(r) >= TAIL_SUPPORT && production.cdf.n * beyond(r) >= 1,
+    (r) => reaches(baseline.cdf.n, r, TAIL_SUPPORT) && reaches(production.cdf.n, r, 1),
   );
   if (rank === undefined) return null;
   const threshold = thresholdsOf(baseline).find((t) => t.rank === rank)!.value;
@@ -90,6 +109,7 @@ function headlineTail(
     tail,
     threshold,
     thresholdCounts: { baseline: baseline.thresholdCounts, production: production.thresholdCounts },
+    designEffect,
   });
 }
 
@@ -102,6 +122,7 @@ function thinComparison(baseline: NumericSide, production: NumericSide): ThinNum
     ks: null,
     wasserstein: null,
     tails: null,
+    tailRanks: null,
     psi: null,
     jensenShannon: null,
     pairs: [],

@@ -87,6 +87,7 @@ export {
   sensitivityOf,
   type VisibleChange,
 } from "./sensitivity/sensitivity.js";
+export { type ShiftPoint, shiftFunction } from "./shift-function/shift-function.js";
 export { signedRootDeviance } from "./signed-root-deviance.js";
 export { chiSquareExceededBy, chiSquareTail } from "./special/chi-square.js";
 export {
@@ -101,6 +102,12 @@ export { learnSway, type Sway } from "./sway/learn-sway.js";
 export { Tolerance, type ToleranceBasis, type ToleranceInput } from "./sway/tolerance.js";
 export type { WatchedCounts } from "./sway/watched-counts.js";
 export { type CdfSweep, sweepCdfs } from "./sweep-cdfs.js";
+export {
+  TAIL_RANKS,
+  type TailDivergence,
+  type TailDivergenceOptions,
+  tailDivergence,
+} from "./tail-divergence/tail-divergence.js";
 export { type TailExceedance, type TailExceedanceInput, tailExceedance } from "./tail-exceedance.js";
 export { type ThresholdShare, thresholdShares } from "./threshold-shares.js";
 export { wassersteinScale } from "./wasserstein-scale.js";

@@ -1,5 +1,6 @@
 import type { KsDistance } from "./ks-distance.js";
 import type { QuantilePair } from "./quantile-pairs.js";
+import type { TailDivergence } from "./tail-divergence/tail-divergence.js";
 import type { TailExceedance } from "./tail-exceedance.js";
 import type { ThresholdShare } from "./threshold-shares.js";
 
@@ -34,6 +35,11 @@ export interface ComparedNumeric extends ComparisonCounts {
   };
   /** Headline exceedance of each tail; null when n does not reach even into the outer quarter. */
   readonly tails: { readonly lower: TailExceedance | null; readonly upper: TailExceedance | null };
+  /** Exceedance at p5, p1, p0.1 and p95, p99, p99.9. */
+  readonly tailRanks: {
+    readonly lower: readonly TailDivergence[];
+    readonly upper: readonly TailDivergence[];
+  };
   readonly psi: number;
   readonly jensenShannon: number;
   readonly pairs: readonly QuantilePair[];
@@ -50,6 +56,7 @@ export interface ThinNumeric extends ComparisonCounts {
   readonly ks: null;
   readonly wasserstein: null;
   readonly tails: null;
+  readonly tailRanks: null;
   readonly psi: null;
   readonly jensenShannon: null;
   readonly pairs: readonly [];
