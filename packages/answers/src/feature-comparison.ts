@@ -6,6 +6,8 @@ import {
   type QuantilePair,
   type Reading,
   readPattern,
+  type ShiftPoint,
+  shiftFunction,
   type TailExceedance,
   type Verdict,
 } from "@moorline/stats";
@@ -25,9 +27,13 @@ export interface FeatureComparison extends CompanionStatistics {
   readonly ks: NumericComparison["ks"];
   readonly wasserstein: NumericComparison["wasserstein"];
   readonly tails: { readonly lower: TailExceedance | null; readonly upper: TailExceedance | null } | null;
+  /** Exceedance at p5, p1, p0.1 and p95, p99, p99.9, each with its interval and in words. */
+  readonly tailRanks: NumericComparison["tailRanks"];
   readonly psi: number | null;
   readonly jensenShannon: number | null;
   readonly pairs: readonly QuantilePair[];
+  /** The pairs as difference and factor, with the same band. */
+  readonly shift: readonly ShiftPoint[];
 }
 
 /** Two sides of one feature, compared and judged without a time axis. */
@@ -41,7 +47,7 @@ export function compareFeature(
   const comparison = compareNumeric(baseline, production);
   const { state, sentence } = compareVerdict(comparison);
   const pattern = readPattern(baseline, production, { unit });
-  const { n, missing, ks, wasserstein, tails, psi, jensenShannon, pairs } = comparison;
+  const { n, missing, ks, wasserstein, tails, tailRanks, psi, jensenShannon, pairs } = comparison;
   return {
     feature,
     kind: "numeric",
@@ -54,10 +60,12 @@ export function compareFeature(
     ks,
     wasserstein,
     tails,
+    tailRanks,
     psi,
     jensenShannon,
     ...companionStatistics(baseline, production),
     pairs,
+    shift: shiftFunction(pairs),
   };
 }
 

@@ -49,7 +49,8 @@ export function QqMarker({
   );
 }
 
-function triangle(x: number, y: number, up: boolean): string {
+/** The path of a triangle that points up or down. */
+export function triangle(x: number, y: number, up: boolean): string {
   const tip = up ? -5.5 : 5.5;
   const at = (dx: number, dy: number) =>
     `${Math.round((x + dx) * 100) / 100} ${Math.round((y + dy) * 100) / 100}`;

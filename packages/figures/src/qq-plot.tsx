@@ -1,7 +1,7 @@
 import type { VNode } from "preact";
 import { numberText, rankText } from "./number-text.js";
 import { markerKind, QqMarker } from "./qq-marker.js";
-import { type AxisKind, chooseAxis, type ValueScale, valueScale } from "./value-scale.js";
+import { AXIS_WORDS, type AxisKind, chooseAxis, type ValueScale, valueScale } from "./value-scale.js";
 
 /** One quantile pair; a value is null where the data do not reach that rank. */
 export interface PlottedPair {
@@ -30,11 +30,6 @@ const WIDTH = 640;
 const HEIGHT = 600;
 const MARGIN = { left: 74, right: 40, top: 24, bottom: 92 } as const;
 const LABELLED = new Set([0.01, 0.05, 0.25, 0.5, 0.75, 0.95, 0.99, 0.999]);
-const AXIS_WORDS: Record<AxisKind, string> = {
-  linear: "linear axes",
-  log: "logarithmic axes",
-  symlog: "symmetric logarithmic axes",
-};
 
 export interface QqPlotProps {
   readonly data: QqPlotData;

@@ -2,6 +2,12 @@ import { type ScaleContinuousNumeric, scaleLinear, scaleLog, scaleSymlog } from 
 
 export type AxisKind = "linear" | "log" | "symlog";
 
+export const AXIS_WORDS: Record<AxisKind, string> = {
+  linear: "linear axes",
+  log: "logarithmic axes",
+  symlog: "symmetric logarithmic axes",
+};
+
 export interface ValueScale {
   readonly kind: AxisKind;
   readonly at: (value: number) => number;

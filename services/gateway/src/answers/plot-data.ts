@@ -1,5 +1,5 @@
 import type { PairsAnswer } from "@moorline/answers";
-import type { QqPlotData } from "@moorline/figures";
+import type { QqPlotData, ShiftPlotData } from "@moorline/figures";
 
 /** A pairs answer as the figure's data: the same for the page and the SVG. */
 export function plotData(answer: PairsAnswer): QqPlotData {
@@ -16,6 +16,12 @@ export function plotData(answer: PairsAnswer): QqPlotData {
     provenance: `${answer.stream}, slice ${answer.slice}, ${rangeText(answer.window)}, ${held}${part}`,
     against: answer.baseline === null ? "other range" : "baseline",
   };
+}
+
+/** The same answer's shift function as a figure's data. */
+export function shiftPlotData(answer: PairsAnswer): ShiftPlotData {
+  const { feature, unit, provenance, against = "baseline" } = plotData(answer);
+  return { feature, unit, provenance, against, shift: answer.shift };
 }
 
 /** `2026-12-01 10:00 to 11:00 UTC`; the second date only where it is another day. */

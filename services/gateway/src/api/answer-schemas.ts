@@ -72,6 +72,26 @@ const tail = z
   .loose();
 
 const interval = z.array(z.number()).length(2);
+const tailRank = z.object({
+  rank: z.number(),
+  threshold: maybe,
+  exceedance: maybe,
+  expected: maybe,
+  ratio: maybe,
+  interval: interval.nullable(),
+  n: both(z.number()),
+  exactCount: z.boolean().nullable(),
+  sentence: z.string(),
+  beyondData: z.literal(true).optional(),
+});
+const shiftPoint = z.object({
+  rank: z.number(),
+  difference: maybe,
+  ratio: maybe,
+  low: maybe,
+  high: maybe,
+  beyondData: z.literal(true).optional(),
+});
 const wassersteinChange = z.object({
   distance: z.number(),
   noise: z.number(),
@@ -112,6 +132,7 @@ export const pairsAnswer = z
       .nullable(),
     wasserstein: z.object({ distance: z.number(), scaled: maybe }).nullable(),
     tails: z.object({ lower: tail.nullable(), upper: tail.nullable() }).nullable(),
+    tailRanks: z.object({ lower: z.array(tailRank), upper: z.array(tailRank) }).nullable(),
     psi: maybe,
     jensenShannon: maybe,
     andersonDarling: z
@@ -128,6 +149,7 @@ export const pairsAnswer = z
     pairs: z.array(
       z.object({ rank: z.number(), baseline: maybe, production: maybe, low: maybe, high: maybe }).loose(),
     ),
+    shift: z.array(shiftPoint),
     caution: z.string(),
   })
   .loose();

@@ -1,8 +1,8 @@
 import type { PairsAnswer } from "@moorline/answers";
-import { countText, numberText, QqPlot, rankText } from "@moorline/figures";
+import { countText, numberText, QqPlot, rankText, ShiftPlot } from "@moorline/figures";
 import type { VNode } from "preact";
 import type { FeatureRow } from "../answers/feature-rows.js";
-import { plotData, rangeText } from "../answers/plot-data.js";
+import { plotData, rangeText, shiftPlotData } from "../answers/plot-data.js";
 import { featurePath, pairsPath } from "./links.js";
 import { StateMark } from "./state-mark.js";
 import { percentText, ratioText, timeText } from "./words.js";
@@ -29,6 +29,9 @@ export function FeatureContent({ answer, rows, slices }: FeaturePageProps): VNod
       <p class="reading">{answer.reading}</p>
       <div class="plot">
         <QqPlot data={plotData(answer)} />
+      </div>
+      <div class="plot">
+        <ShiftPlot data={shiftPlotData(answer)} />
       </div>
       <p>
         {"The same figures as "}
@@ -75,6 +78,11 @@ function Figures({ answer }: { readonly answer: PairsAnswer }): VNode {
           : `${ratioText(found.ratio)} the baseline's share beyond ${rankText(found.rank)} = ${numberText(found.threshold)}${interval}`;
       return [`${tail === "lower" ? "Lower" : "Upper"} tail`, words] as const;
     }),
+    ...(["lower", "upper"] as const).flatMap((tail) =>
+      (answer.tailRanks?.[tail] ?? []).map(
+        ({ rank, sentence }) => [`Beyond ${rankText(rank)}`, sentence] as const,
+      ),
+    ),
     [
       "Held against",
       answer.baseline === null
