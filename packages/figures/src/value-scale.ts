@@ -31,14 +31,21 @@ export function chooseAxis(values: readonly number[]): AxisKind {
   return largest / middle >= LOG_FROM_RATIO ? "symlog" : "linear";
 }
 
+/** The difference of two doubles near the largest would be infinite: such values are drawn at the edge of what can be told apart. */
+const LARGEST_DRAWN = 1e300;
+
+function drawable(value: number): number {
+  return Math.min(LARGEST_DRAWN, Math.max(-LARGEST_DRAWN, value));
+}
+
 /** A scale over the values with a little room at both ends. */
 export function valueScale(
   values: readonly number[],
   kind: AxisKind,
   range: readonly [number, number],
 ): ValueScale {
-  const scale = scaleOf(values, kind).range([...range]);
-  return { kind, at: (value) => scale(value), ticks: ticksOf(scale, kind) };
+  const scale = scaleOf(values.map(drawable), kind).range([...range]);
+  return { kind, at: (value) => scale(drawable(value)), ticks: ticksOf(scale, kind) };
 }
 
 function scaleOf(values: readonly number[], kind: AxisKind): ScaleContinuousNumeric<number, number> {
