@@ -11,7 +11,7 @@ import { quantilePairs } from "./quantile-pairs.js";
 import { sweepCdfs } from "./sweep-cdfs.js";
 import { reaches, TAIL_SUPPORT, tailDivergence } from "./tail-divergence/tail-divergence.js";
 import { type TailExceedance, tailExceedance } from "./tail-exceedance.js";
-import { countAt, thresholdShares, thresholdsOf } from "./threshold-shares.js";
+import { belowLowestShare, countAt, thresholdShares, thresholdsOf } from "./threshold-shares.js";
 import { wassersteinScale } from "./wasserstein-scale.js";
 
 export interface CompareOptions {
@@ -62,6 +62,7 @@ export function compareNumeric(
     jensenShannon: jensenShannonDistance(bins),
     pairs: quantilePairs(baseline.cdf, production.cdf, options),
     shares,
+    belowLowest: belowLowestShare(baseline, production),
     exactCounts: shares.every((s) => countAt(production.cdf, s.value, production.thresholdCounts).counted),
   };
 }
@@ -127,6 +128,7 @@ function thinComparison(baseline: NumericSide, production: NumericSide): ThinNum
     jensenShannon: null,
     pairs: [],
     shares: [],
+    belowLowest: null,
     exactCounts: null,
   };
 }

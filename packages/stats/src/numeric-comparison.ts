@@ -44,6 +44,8 @@ export interface ComparedNumeric extends ComparisonCounts {
   readonly jensenShannon: number;
   readonly pairs: readonly QuantilePair[];
   readonly shares: readonly ThresholdShare[];
+  /** Values strictly below the lowest threshold, where many baseline values are that very threshold; null elsewhere: the shares see them. */
+  readonly belowLowest: ThresholdShare | null;
   /** True when production's shares are counts; false when some were read from a digest, hence approximate. */
   readonly exactCounts: boolean;
 }
@@ -61,6 +63,7 @@ export interface ThinNumeric extends ComparisonCounts {
   readonly jensenShannon: null;
   readonly pairs: readonly [];
   readonly shares: readonly [];
+  readonly belowLowest: null;
   readonly exactCounts: null;
 }
 

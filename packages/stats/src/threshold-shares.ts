@@ -70,3 +70,29 @@ export function nearestTo(expected: number, observed: number, error: number): nu
   if (Math.abs(observed - expected) <= error) return expected;
   return observed > expected ? observed - error : observed + error;
 }
+
+/** From this share of the baseline on the lowest threshold is an atom: such values are counted apart, exactly. */
+const ATOM_SHARE = 0.01;
+
+/** Events of a baseline strictly below its lowest threshold; null where no atom stands there, for then the threshold's own share sees them. */
+export function belowLowestEvents(baseline: NumericSide): number | null {
+  const lowest = thresholdsOf(baseline)[0];
+  if (lowest === undefined) return null;
+  const { below, upTo } = eventsAt(baseline.cdf, lowest.value);
+  return upTo - below >= ATOM_SHARE * baseline.cdf.n ? below : null;
+}
+
+/** The share strictly below the lowest threshold, where an atom of the baseline stands there: what falls below it leaves every other share as it is. */
+export function belowLowestShare(baseline: NumericSide, production: NumericSide): ThresholdShare | null {
+  const before = belowLowestEvents(baseline);
+  if (before === null || production.cdf.n === 0) return null;
+  const { rank, value } = thresholdsOf(baseline)[0]!;
+  const { below: events } = eventsAt(production.cdf, value);
+  const expected = (before + 0.5) / (baseline.cdf.n + 1);
+  const observed = events / production.cdf.n;
+  // Atoms of the baseline are counted exactly in every segment, so that only what lies around them may be off.
+  const rankError = production.cdf.exact ? 0 : production.cdf.rankErrorAt(Math.min(observed, 0.5));
+  const effective = effectiveEvents(baseline.cdf.n, production.cdf.n);
+  const z = signedRootDeviance(nearestTo(expected, observed, rankError), expected, effective);
+  return { rank, value, expected, observed, events, rankError, z };
+}

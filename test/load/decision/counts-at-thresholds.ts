@@ -29,7 +29,7 @@ export class CountsAtThresholds {
       sum += between[share]!;
       return sum;
     });
-    return { events: column.length, missing: 0, finite: column.length, atOrBelow };
+    return { events: column.length, missing: 0, finite: column.length, atOrBelow, belowLowest: null };
   }
 }
 

@@ -86,7 +86,7 @@ export class SimulatedFeature {
 function wholeOf(blocks: BlockCounts): WatchedCounts {
   const sum = (values: ArrayLike<number>) => Array.from(values).reduce((a, b) => a + b, 0);
   const finite = sum(blocks.finite);
-  return { events: finite, missing: 0, finite, atOrBelow: blocks.atOrBelow.map(sum) };
+  return { events: finite, missing: 0, finite, atOrBelow: blocks.atOrBelow.map(sum), belowLowest: null };
 }
 
 /** Thresholds of a model: its quantiles, the same for all of its features. */

@@ -1,5 +1,5 @@
 import type { Tolerance } from "../sway/tolerance.js";
-import type { WatchedCounts } from "../sway/watched-counts.js";
+import { BELOW_LOWEST, type WatchedCounts } from "../sway/watched-counts.js";
 import { type DecisionMemory, EMPTY_MEMORY } from "./decision-memory.js";
 import type { DecisionRule } from "./decision-rule.js";
 import { placeOf } from "./drift-place.js";
@@ -97,7 +97,9 @@ function nextState(
 /** The share of some evidence with the threshold that it is of. */
 export function thresholdOf(evidence: Evidence, { thresholds }: Pick<DecisionGround, "thresholds">) {
   const rank = SHARE_RANKS[evidence.share]!;
-  return { ...pairOf(evidence), rank, value: rank === null ? null : (thresholds[evidence.share] ?? null) };
+  const strictly = evidence.share === BELOW_LOWEST;
+  const value = rank === null ? null : (thresholds[strictly ? 0 : evidence.share] ?? null);
+  return { ...pairOf(evidence), rank, value, strictly };
 }
 
 /** The strongest of each scale: new where the scale is due, else as it was. */

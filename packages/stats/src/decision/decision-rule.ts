@@ -20,8 +20,8 @@ export interface DecisionRule {
   readonly missingFloor: number;
   /** … and smallest relative one. */
   readonly missingFactor: number;
-  /** Effective events without a value that are enough to judge, however few were expected. */
-  readonly missingMinEvents: number;
+  /** Effective events without a value, or below all of the baseline, that are enough to judge, however few were expected. */
+  readonly unexpectedMinEvents: number;
   /** |z| of the pooled blocks that makes a feature adrift … */
   readonly zPage: number;
   /** … and the one that makes it strain: so much less. */
@@ -57,7 +57,7 @@ export const DEFAULT_DECISION_RULE: DecisionRule = Object.freeze({
   tailMinExpected: 20,
   missingFloor: 0.005,
   missingFactor: 0.5,
-  missingMinEvents: 10,
+  unexpectedMinEvents: 10,
   zPage: 6.5,
   zStrainBelow: 1,
   zRelease: 4,

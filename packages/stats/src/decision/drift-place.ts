@@ -20,6 +20,8 @@ export interface DriftPlace {
 export interface ShareAtThreshold extends SharePair {
   readonly rank: number | null;
   readonly value: number | null;
+  /** True for the share strictly below the threshold, that at it left out. */
+  readonly strictly: boolean;
 }
 
 /** The place that a share speaks for. */

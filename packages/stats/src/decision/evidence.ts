@@ -1,7 +1,7 @@
 import { FROZEN_RANKS, partOfRank } from "../grid-ranks.js";
 import { signedRootDeviance } from "../signed-root-deviance.js";
 import type { Tolerance } from "../sway/tolerance.js";
-import { MISSING, WATCHED } from "../sway/watched-counts.js";
+import { BELOW_LOWEST, MISSING, WATCHED } from "../sway/watched-counts.js";
 import type { DecisionRule } from "./decision-rule.js";
 import { isFarAtOnce, passesFloor, type SharePair, type WatchedPart } from "./floors.js";
 import { type BlockSums, COLUMN } from "./window-history.js";
@@ -24,8 +24,8 @@ export interface Evidence {
 }
 
 /** Rank of each watched share; null for missing. */
-export const SHARE_RANKS: readonly (number | null)[] = [...FROZEN_RANKS, null];
-const PARTS: readonly WatchedPart[] = [...FROZEN_RANKS.map(partOfRank), "missing"];
+export const SHARE_RANKS: readonly (number | null)[] = [...FROZEN_RANKS, null, FROZEN_RANKS[0]!];
+const PARTS: readonly WatchedPart[] = [...FROZEN_RANKS.map(partOfRank), "missing", "lower tail"];
 
 export function partOfShare(share: number): WatchedPart {
   return PARTS[share]!;
@@ -82,7 +82,7 @@ function evidenceAt(look: Look, share: number): Evidence | null {
   const { sums, scale, tolerance, rule, least, floored } = look;
   const { pool, blocks } = sums;
   const events = totalIn(pool, 0, share);
-  if (events <= 0) return null;
+  if (events <= 0 || !tolerance.watches(share)) return null;
   const observed = Math.min(1, hitsIn(pool, 0, share) / events);
   const expected = expectedIn(pool, 0, share, tolerance);
   if (floored && !passesFloor(PARTS[share]!, observed, expected, events, rule)) return null;
@@ -95,7 +95,10 @@ function evidenceAt(look: Look, share: number): Evidence | null {
   return { share, scale, blocks, observed, expected, events, effective, z };
 }
 
-/** Far from the middle the deviance is no normal deviate any more: something must have been expected, or, of missing values, have come. */
+/**
+ * Far from the middle the deviance is no normal deviate any more: something must have been expected on either side; or, where the baseline hardly has
+ * anything (no value missing, nothing below its lowest value, next to nothing beside an atom), enough must have come.
+ */
 function isJudgeable(
   share: number,
   effective: number,
@@ -104,8 +107,17 @@ function isJudgeable(
   rule: DecisionRule,
 ): boolean {
   if (effective * Math.min(expected, 1 - expected) >= rule.minExpected) return true;
-  return share === MISSING && effective * observed >= rule.missingMinEvents;
+  if (share === MISSING || share === BELOW_LOWEST) return effective * observed >= rule.unexpectedMinEvents;
+  const beside = expected < 0.5 ? observed : 1 - observed;
+  return isAtAtom(share, expected) && effective * beside >= rule.unexpectedMinEvents;
 }
+
+/** Is the threshold a value that the baseline repeats, so that far more lies at or below it than its rank? */
+function isAtAtom(share: number, expected: number): boolean {
+  return Math.abs(expected - SHARE_RANKS[share]!) > ATOM_SHARE;
+}
+
+const ATOM_SHARE = 0.01;
 
 function blocksAgree({ sums, scale, tolerance, rule }: Look, share: number, direction: number): boolean {
   const { each, blocks, width } = sums;
@@ -125,6 +137,7 @@ function totalIn(sums: Float64Array, at: number, share: number): number {
 }
 
 function hitsIn(sums: Float64Array, at: number, share: number): number {
+  if (share === BELOW_LOWEST) return sums[at + COLUMN.belowLowest]!;
   return sums[at + (share === MISSING ? COLUMN.missing : COLUMN.hits + share)]!;
 }
 

@@ -72,5 +72,6 @@ function windowOf(blocks: BlockCounts, first: number, length: number): WatchedCo
     missing: sum(blocks.missing),
     finite: sum(blocks.finite),
     atOrBelow: Array.from({ length: MISSING }, (_, share) => sum(hitsOf(blocks, share))),
+    belowLowest: null,
   };
 }

@@ -27,7 +27,7 @@ export function sentenceOf(share: ShareAtThreshold): string {
       `where the baseline has ${percentInWords(before)}; ${n}`
     );
   }
-  const side = share.part === "upper tail" ? "above" : "at or below";
+  const side = share.part === "upper tail" ? "above" : share.strictly ? "below" : "at or below";
   return (
     `${share.part} ${directionOf(share)}: ${percentInWords(now)} of values lie ${side} ${where}, ` +
     `${timesInWords(now / before)} the baseline's ${percentInWords(before)}; ${n}`

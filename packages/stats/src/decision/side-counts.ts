@@ -1,6 +1,6 @@
 import type { NumericSide } from "../numeric-side.js";
 import type { WatchedCounts } from "../sway/watched-counts.js";
-import { countAt, thresholdsOf } from "../threshold-shares.js";
+import { belowLowestEvents, countAt, thresholdsOf } from "../threshold-shares.js";
 
 /** Counts of a whole baseline at its own thresholds. */
 export interface SideCounts extends WatchedCounts {
@@ -16,6 +16,7 @@ export function sideCounts(side: NumericSide): SideCounts {
     missing: side.missing,
     finite: side.cdf.n,
     atOrBelow: thresholds.map((value) => countAt(side.cdf, value, side.thresholdCounts).events),
+    belowLowest: belowLowestEvents(side),
     thresholds,
   };
 }

@@ -2,14 +2,10 @@ import { effectiveEvents } from "../effective-events.js";
 import { partOfRank } from "../grid-ranks.js";
 import type { NumericComparison } from "../numeric-comparison.js";
 import { nearestTo } from "../threshold-shares.js";
-import type { SharePair } from "./floors.js";
+import type { ShareAtThreshold } from "./drift-place.js";
 
 /** One share that a comparison is judged by: at or below a frozen threshold, or without a value. */
-export interface WatchedShare extends SharePair {
-  /** Of the threshold; null for `missing`. */
-  readonly rank: number | null;
-  /** The threshold; null for `missing`. */
-  readonly value: number | null;
+export interface WatchedShare extends ShareAtThreshold {
   /** Observed, moved towards the expected by what a sketch may be off: what z is computed from. */
   readonly proven: number;
   /** Events that the expected share is of. */
@@ -21,8 +17,10 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
   const watched: WatchedShare[] = [];
   const { n, events, missing } = comparison;
   if (effectiveEvents(n.baseline, n.production) >= minEvents) {
-    for (const share of comparison.shares) {
+    const below = comparison.belowLowest;
+    for (const share of below === null ? comparison.shares : [...comparison.shares, below]) {
       watched.push({
+        strictly: share === below,
         part: partOfRank(share.rank),
         rank: share.rank,
         value: share.value,
@@ -37,6 +35,7 @@ export function watchedShares(comparison: NumericComparison, minEvents: number):
   if (effectiveEvents(events.baseline, events.production) >= minEvents) {
     const observed = missing.production ?? 0;
     watched.push({
+      strictly: false,
       part: "missing",
       rank: null,
       value: null,

@@ -2,7 +2,7 @@ import { FROZEN_RANKS } from "../grid-ranks.js";
 import type { NumericComparison } from "../numeric-comparison.js";
 import type { NumericSide } from "../numeric-side.js";
 import type { WatchedCounts } from "../sway/watched-counts.js";
-import { nearestTo, type ThresholdShare, thresholdShares } from "../threshold-shares.js";
+import { belowLowestShare, nearestTo, type ThresholdShare, thresholdShares } from "../threshold-shares.js";
 
 /**
  * The counts of a compared window that the decision works on.
@@ -17,6 +17,7 @@ export function windowCounts(comparison: NumericComparison): WatchedCounts {
     missing: Math.round((missing.production ?? 0) * events.production),
     finite: n.production,
     atOrBelow: countsAtThresholds(shares, n.production),
+    belowLowest: provenEvents(comparison.belowLowest, n.production),
   };
 }
 
@@ -29,14 +30,18 @@ export function countWindow(baseline: NumericSide, production: NumericSide): Wat
     missing: production.missing,
     finite: m,
     atOrBelow: countsAtThresholds(compared ? thresholdShares(baseline, production) : [], m),
+    belowLowest: compared ? provenEvents(belowLowestShare(baseline, production), m) : null,
   };
 }
 
 function countsAtThresholds(shares: readonly ThresholdShare[], finite: number): readonly number[] {
   if (shares.length === 0) return new Array<number>(FROZEN_RANKS.length).fill(0);
-  return shares.map((share) =>
-    share.rankError === 0
-      ? share.events
-      : nearestTo(share.expected, share.observed, share.rankError) * finite,
-  );
+  return shares.map((share) => provenEvents(share, finite)!);
+}
+
+/** The count, or, where it was read from a digest, the one nearest to what was expected that the digest's error allows. */
+function provenEvents(share: ThresholdShare | null, finite: number): number | null {
+  if (share === null) return null;
+  if (share.rankError === 0) return share.events;
+  return nearestTo(share.expected, share.observed, share.rankError) * finite;
 }

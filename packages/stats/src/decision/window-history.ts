@@ -1,5 +1,5 @@
 import type { Tolerance } from "../sway/tolerance.js";
-import { WATCHED, type WatchedCounts } from "../sway/watched-counts.js";
+import { MISSING, WATCHED, type WatchedCounts } from "../sway/watched-counts.js";
 
 /**
  * Counts of the last windows, finer for the near past than for the far: level i holds the last runs of 2^i windows, each as one row of numbers.
@@ -22,8 +22,8 @@ export const LONGEST_SCALE = 64;
 const LEVELS = 5;
 const ROWS_A_BLOCK = 4;
 
-/** Columns of a row: events, missing, finite, the eleven counts; for a seasonal feature the expected counts too. */
-export const COLUMN = { events: 0, missing: 1, finite: 2, hits: 3, expected: 14 } as const;
+/** Columns of a row: events, missing, finite, the eleven counts, those below the lowest threshold; for a seasonal feature the expected counts too. */
+export const COLUMN = { events: 0, missing: 1, finite: 2, hits: 3, belowLowest: 14, expected: 15 } as const;
 
 export function rowWidth(tolerance: Tolerance): number {
   return tolerance.isSeasonal ? COLUMN.expected + WATCHED : COLUMN.expected;
@@ -58,10 +58,10 @@ export function withWindow(
 }
 
 function rowOf(window: WatchedCounts, endMs: number | null, tolerance: Tolerance, width: number): number[] {
-  const row = [window.events, window.missing, window.finite, ...window.atOrBelow];
+  const row = [window.events, window.missing, window.finite, ...window.atOrBelow, window.belowLowest ?? 0];
   if (width === COLUMN.expected) return row;
   for (let share = 0; share < WATCHED; share += 1) {
-    const total = share === WATCHED - 1 ? window.events : window.finite;
+    const total = share === MISSING ? window.events : window.finite;
     // A thousandth of an event is enough, and shorter in the store.
     row.push(Math.round(total * tolerance.expected(share, endMs) * 1_000) / 1_000);
   }

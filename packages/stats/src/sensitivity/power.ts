@@ -33,7 +33,7 @@ export function sustainedPower(input: PowerInput): number {
   if (changed === expected || !tolerance.knows(scale * blocks, pooled, share)) return 0;
   const effective = tolerance.effective(share, scale * blocks, pooled);
   const enough = effective * Math.min(expected, 1 - expected) >= rule.minExpected;
-  const missing = share === MISSING && effective * changed >= rule.missingMinEvents;
+  const missing = share === MISSING && effective * changed >= rule.unexpectedMinEvents;
   if (!enough && !missing) return 0;
   const needed = Math.max(rule.zPage, rule.guardFactor * ground.replay().sustained[share]!);
   const up = changed > expected;

@@ -2,7 +2,7 @@ import type { DecisionGround } from "../decision/decide.js";
 import { SHARE_RANKS } from "../decision/evidence.js";
 import { LONGEST_SCALE } from "../decision/window-history.js";
 import type { NumericSide } from "../numeric-side.js";
-import { MISSING, WATCHED } from "../sway/watched-counts.js";
+import { BELOW_LOWEST, MISSING, WATCHED } from "../sway/watched-counts.js";
 import { wassersteinScale } from "../wasserstein-scale.js";
 import { type ChangeFamily, type ChangeName, changeFamilies } from "./changes.js";
 import { sustainedPower } from "./power.js";
@@ -104,7 +104,8 @@ function powerAt(family: ChangeFamily, size: number, scale: number, input: Sensi
   const isMissing = family.name === "missing more often";
   let best = 0;
   for (let share = 0; share < WATCHED; share += 1) {
-    if ((share === MISSING) !== isMissing) continue;
+    // What lies strictly below the lowest threshold is seen there too, or is a filled-in value that no family of change makes.
+    if (share === BELOW_LOWEST || (share === MISSING) !== isMissing) continue;
     const expected = ground.tolerance.expected(share, null);
     const changed = family.share(size, ground.thresholds[share] ?? 0, SHARE_RANKS[share] ?? 0, expected);
     const events = share === MISSING ? eventsPerWindow : eventsPerWindow * finiteShare;

@@ -1,5 +1,5 @@
 import { type BlockCounts, hitsOf, smoothedShare, sumOf, totalsOf } from "./block-counts.js";
-import { WATCHED } from "./watched-counts.js";
+import { COUNTED } from "./watched-counts.js";
 
 const HOUR_MS = 3_600_000;
 const HOURS = 24;
@@ -23,7 +23,7 @@ export function hourProfile(blocks: BlockCounts): HourProfile | null {
   if (days < PROFILE_DAYS) return null;
   const shares: number[][] = [];
   const totals: number[][] = [];
-  for (let share = 0; share < WATCHED; share += 1) {
+  for (let share = 0; share < COUNTED; share += 1) {
     const hit = new Array<number>(HOURS).fill(0);
     const total = new Array<number>(HOURS).fill(0);
     const [hits, all] = [hitsOf(blocks, share), totalsOf(blocks, share)];

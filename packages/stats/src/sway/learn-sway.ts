@@ -10,7 +10,7 @@ import {
   upperLimit,
 } from "./design-effects.js";
 import { type HourProfile, hourOfBlock, hourProfile, profileShare } from "./hour-profile.js";
-import { WATCHED } from "./watched-counts.js";
+import { COUNTED } from "./watched-counts.js";
 
 /** How far the baseline's own blocks wander from the baseline. */
 export interface Sway {
@@ -51,7 +51,7 @@ const HOURS = 24;
 export function learnSway(blocks: BlockCounts): Sway | null {
   const used = Array.from(blocks.events).filter((n) => n > 0).length;
   if (used < 2) return null;
-  const shares = Array.from({ length: WATCHED }, (_, share) => share);
+  const shares = Array.from({ length: COUNTED }, (_, share) => share);
   const totals = shares.map((share) => sumOf(totalsOf(blocks, share)));
   const expected = shares.map((share) => smoothedShare(sumOf(hitsOf(blocks, share)), totals[share]!));
   const effects = shares.map((share) => wholeEffects(blocks, share, expected[share]!));

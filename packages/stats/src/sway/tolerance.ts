@@ -3,7 +3,7 @@ import { smoothedShare } from "./block-counts.js";
 import { type DesignEffects, designEffectAt, FEWEST_POOLED } from "./design-effects.js";
 import { profileShare } from "./hour-profile.js";
 import type { Sway } from "./learn-sway.js";
-import { MISSING, WATCHED, type WatchedCounts } from "./watched-counts.js";
+import { BELOW_LOWEST, MISSING, WATCHED, type WatchedCounts } from "./watched-counts.js";
 
 /** What a tolerance was learnt from: the baseline's blocks by time or by rows, or nothing (events taken as independent). */
 export type ToleranceBasis = "time" | "rows" | "assumed";
@@ -47,21 +47,19 @@ export class Tolerance {
     this.isSeasonal = seasonal !== null;
     this.#effects = seasonal?.effects ?? sway?.effects ?? [];
     this.#expected = Array.from({ length: WATCHED }, (_, share) => {
-      const [hits, total] =
-        share === MISSING
-          ? [baseline.missing, baseline.events]
-          : [baseline.atOrBelow[share] ?? 0, baseline.finite];
-      return smoothedShare(hits, total);
+      if (share === MISSING) return smoothedShare(baseline.missing, baseline.events);
+      const hits = share === BELOW_LOWEST ? baseline.belowLowest : baseline.atOrBelow[share];
+      return smoothedShare(hits ?? 0, baseline.finite);
     });
     this.#baselineError = this.#expected.map((_, share) => {
       if (seasonal !== null) {
-        const totals = seasonal.profile.totals[share]!;
+        const totals = seasonal.profile.totals[countedAs(share)]!;
         const eachHour = totals.reduce((sum, n) => sum + 1 / n, 0) / totals.length;
-        return designEffectAt(this.#effects[share]!, 3_600_000 / sway!.lengthMs!) * eachHour;
+        return designEffectAt(this.#effects[countedAs(share)]!, 3_600_000 / sway!.lengthMs!) * eachHour;
       }
       const total = share === MISSING ? baseline.events : baseline.finite;
       if (total === 0) return Number.POSITIVE_INFINITY;
-      return (this.#effects[share]?.effects.at(-1) ?? 1) / total;
+      return (this.#effects[countedAs(share)]?.effects.at(-1) ?? 1) / total;
     });
   }
 
@@ -70,9 +68,14 @@ export class Tolerance {
     return windowMs === this.windowMs ? this : new Tolerance({ ...this.#input, windowMs });
   }
 
+  /** Is this share one that can tell something the others cannot? All are, but for the last where no atom stands at the lowest threshold. */
+  watches(share: number): boolean {
+    return share !== BELOW_LOWEST || this.#input.baseline.belowLowest !== null;
+  }
+
   /** Share expected in a window. */
   expected(share: number, endMs: number | null): number {
-    if (!this.isSeasonal || endMs === null) return this.#expected[share]!;
+    if (!this.isSeasonal || endMs === null || share === BELOW_LOWEST) return this.#expected[share]!;
     return profileShare(this.#sway!.seasonal!.profile, share, endMs - this.windowMs, endMs);
   }
 
@@ -88,9 +91,9 @@ export class Tolerance {
     const sway = this.#sway;
     if (sway === null) return 1;
     const span = this.#span(windows, total, share);
-    const effect = designEffectAt(this.#effects[share]!, span);
+    const effect = designEffectAt(this.#effects[countedAs(share)]!, span);
     // A baseline that was thinned out saw less of what neighbouring events share: its excess grows with the events of a window.
-    const usual = span * sway.meanTotals[share]!;
+    const usual = span * sway.meanTotals[countedAs(share)]!;
     return total > usual && usual > 0 ? 1 + ((effect - 1) * total) / usual : effect;
   }
 
@@ -114,6 +117,11 @@ export class Tolerance {
   #span(windows: number, total: number, share: number): number {
     const { lengthMs, meanTotals } = this.#sway!;
     if (lengthMs !== null) return (windows * this.windowMs) / lengthMs;
-    return total / Math.max(1, meanTotals[share]!);
+    return total / Math.max(1, meanTotals[countedAs(share)]!);
   }
+}
+
+/** Blocks are not counted strictly below the lowest threshold: what lies at or below it varies at least as much. */
+function countedAs(share: number): number {
+  return share === BELOW_LOWEST ? 0 : share;
 }

@@ -54,6 +54,7 @@ describe("isFarAtOnce(share, rule)", () => {
 
 describe("standingOf(share, rule, designEffect)", () => {
   const share = (observed: number, proven = observed) => ({
+    strictly: false,
     part: "body" as WatchedPart,
     rank: 0.5,
     value: 0,

@@ -57,6 +57,7 @@ export function countsOf(values: readonly (number | null)[], thresholds: readonl
     missing: values.length - finite.length,
     finite: finite.length,
     atOrBelow: thresholds.map((threshold) => finite.filter((value) => value <= threshold).length),
+    belowLowest: null,
   };
 }
 
@@ -84,6 +85,7 @@ export function wholeOf(blocks: BlockCounts): WatchedCounts {
     missing: sum(blocks.missing),
     finite: sum(blocks.finite),
     atOrBelow: blocks.atOrBelow.map(sum),
+    belowLowest: null,
   };
 }
 
