@@ -3,7 +3,7 @@
 // went through their encoded form. "Holds": at every rank that both sides reach, the true value that production has at the rank of the
 // baseline's quantile lies within the band; for no change that value is the quantile itself.
 import { NumericSketch } from "@moorline/sketch";
-import { quantilePairs } from "../dist/index.js";
+import { cdfOf, quantilePairs } from "../dist/index.js";
 import { CASES, Draws } from "./coverage-cases.mjs";
 
 const SCALE = Number(process.argv[2] ?? 1);
@@ -16,6 +16,8 @@ const SIZES = [
   { n: 2000, m: 2000, draws: 2000 },
   { n: 1_000_000, m: 100_000, draws: 60 },
 ];
+/** Draws whose band is also read from the raw values, to tell sketch error from chance in the widths. */
+const RAW_DRAWS = 5;
 const WIDTH_RANKS = [0.01, 0.5, 0.95, 0.99, 0.999];
 const random = new Draws(SEED);
 const started = performance.now();
@@ -31,9 +33,14 @@ function measure(law, { n, m, draws: full }) {
   const draws = Math.max(2, Math.round(full * SCALE));
   const held = { same: [0, 0], changed: [0, 0] };
   const widths = WIDTH_RANKS.map(() => []);
+  const rawWidths = WIDTH_RANKS.map(() => []);
   for (let draw = 0; draw < draws; draw += 1) {
-    const baseline = viewOf(random.column(n, law.draw), 500);
-    const same = viewOf(random.column(m, law.draw));
+    const [values, window] = [random.column(n, law.draw), random.column(m, law.draw)];
+    const [baseline, same] = [viewOf(values, 500), viewOf(window)];
+    if (draw < RAW_DRAWS) {
+      const raw = quantilePairs(cdfOf(values), cdfOf(window), { confidence: 0.95 });
+      for (const [k, rank] of WIDTH_RANKS.entries()) rawWidths[k].push(widthAt(raw, rank));
+    }
     const changed = viewOf(random.column(m, law.changed));
     for (const [i, confidence] of CONFIDENCES.entries()) {
       const pairs = quantilePairs(baseline, same, { confidence });
@@ -52,6 +59,7 @@ function measure(law, { n, m, draws: full }) {
     changed: held.changed.map((k) => k / draws),
     standardError: CONFIDENCES.map((c) => Math.sqrt((c * (1 - c)) / draws)),
     medianWidth95: Object.fromEntries(WIDTH_RANKS.map((rank, k) => [rank, medianOf(widths[k])])),
+    rawWidth95: Object.fromEntries(WIDTH_RANKS.map((rank, k) => [rank, medianOf(rawWidths[k])])),
   };
   console.error(
     `${law.name}, ${n} against ${m}: same ${row.same.join(" ")}, changed ${row.changed.join(" ")}; width ${JSON.stringify(row.medianWidth95)}`,
