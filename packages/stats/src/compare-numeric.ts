@@ -19,6 +19,8 @@ export interface CompareOptions {
   readonly confidence?: BandConfidence;
   /** Of dependence between events, for band, p-value and tail intervals. Default 1: independent. */
   readonly designEffect?: DesignEffect;
+  /** False leaves the quantile pairs, and the exceedance at three ranks of each tail, out: whoever only decides does not need them. Default true. */
+  readonly pairs?: boolean;
 }
 
 /**
@@ -41,6 +43,7 @@ export function compareNumeric(
   const scale = wassersteinScale(baseline.cdf);
   const bins = decileBins(baseline.cdf, production.cdf);
   const shares = thresholdShares(baseline, production);
+  const inFull = options.pairs ?? true;
   return {
     ...countsOf(baseline, production),
     thin: false,
@@ -55,12 +58,12 @@ export function compareNumeric(
       upper: headlineTail(baseline, production, "upper", options.designEffect),
     },
     tailRanks: {
-      lower: tailDivergence(baseline, production, "lower", options),
-      upper: tailDivergence(baseline, production, "upper", options),
+      lower: inFull ? tailDivergence(baseline, production, "lower", options) : [],
+      upper: inFull ? tailDivergence(baseline, production, "upper", options) : [],
     },
     psi: populationStabilityIndex(bins),
     jensenShannon: jensenShannonDistance(bins),
-    pairs: quantilePairs(baseline.cdf, production.cdf, options),
+    pairs: inFull ? quantilePairs(baseline.cdf, production.cdf, options) : [],
     shares,
     belowLowest: belowLowestShare(baseline, production),
     exactCounts: shares.every((s) => countAt(production.cdf, s.value, production.thresholdCounts).counted),

@@ -51,7 +51,9 @@ export function readWindow(
 
 /** Compares a window with the baseline, without deciding. */
 export function compareWindow(range: RangeSketch, against: HeldAgainst): NumericComparison {
-  return compareNumeric(against.held.side, sideOfSketch(range.sketch ?? new NumericSketch()));
+  return compareNumeric(against.held.side, sideOfSketch(range.sketch ?? new NumericSketch()), {
+    pairs: false,
+  });
 }
 
 /** Compares and decides: the evaluation, the state that follows from it and from the state before. */
@@ -73,7 +75,7 @@ export function judgeWindow(
     return { evaluation: null, state, figures: {} };
   }
   const production = sideOfSketch(range.sketch ?? new NumericSketch());
-  const comparison = compareNumeric(against.held.side, production);
+  const comparison = compareNumeric(against.held.side, production, { pairs: false });
   const ground = against.held.ground(at.window.endMs - at.window.startMs, rule);
   const counts = windowCounts(comparison);
   const decision = decide(memoryOf(before, baselines.id), { counts, endMs: at.window.endMs }, ground);
