@@ -44,7 +44,9 @@ function excessBeyond(context: PatternContext, rank: number, side: "upper" | "lo
   const share = excessAt(edge);
   if (share < Math.max(LEAST_EXCESS, LEAST_EVENTS / m)) return null;
   const expected = beyondIn(eventsAt(baseline, unfitted(edge)), baseline.n);
-  if (zBetween(share + expected, expected, context.effective) < CRITICAL) return null;
+  const edgeRank = upper ? 1 - expected : expected;
+  if (zBetween(share + expected, expected, context.effective, context.rankErrorAt(edgeRank)) < CRITICAL)
+    return null;
   const end = upper ? production.values.at(-1)! : production.values[0]!;
   /** Where so much of the excess is left beyond. */
   const where = (left: number) => {

@@ -10,6 +10,8 @@ const HALF = GRID_RANKS.filter((rank) => rank >= 0.02 && rank <= 0.5);
 const FITS_BELOW = 35;
 const BETTER_BY = 10;
 const LEAST_SHARE = 0.05;
+/** Beyond this it is the population that moved, not a part of it. */
+const MOST_SHARE = 0.6;
 
 /** Part of the events moved away, the rest is as it was: one half of the distribution keeps its proportions. */
 export function mixtureRule(context: PatternContext): Pattern | null {
@@ -28,6 +30,7 @@ export function mixtureRule(context: PatternContext): Pattern | null {
 /** Share of the events that left one half, or null. */
 function halfKept(context: PatternContext, mirrored: boolean): number | null {
   const { effective, m, median, scale, line } = context;
+  const rankErrorAt = (rank: number) => context.rankErrorAt(mirrored ? 1 - rank : rank);
   const side = (view: PatternContext["baseline"]) => (mirrored ? mirroredView(view) : view);
   const [baseline, production] = [side(context.baseline), side(context.production)];
   const center = mirrored ? -median : median;
@@ -43,9 +46,13 @@ function halfKept(context: PatternContext, mirrored: boolean): number | null {
   });
   const kept = medianOf(at.map(({ observed, expected }) => observed / expected));
   const share = 1 - kept;
-  if (share < Math.max(LEAST_SHARE, 3 * Math.sqrt(0.5 / m))) return null;
+  if (share < Math.max(LEAST_SHARE, 3 * Math.sqrt(0.5 / m)) || share > MOST_SHARE) return null;
   const sum = (z: (one: (typeof at)[number]) => number) => at.reduce((total, one) => total + z(one) ** 2, 0);
-  const fits = sum(({ observed, expected }) => zBetween(observed, kept * expected, effective));
-  const affine = sum(({ observed, affine: share_ }) => zBetween(observed, share_, effective));
+  const fits = sum(({ observed, expected }) =>
+    zBetween(observed, kept * expected, effective, rankErrorAt(expected)),
+  );
+  const affine = sum(({ expected, observed, affine: share_ }) =>
+    zBetween(observed, share_, effective, rankErrorAt(expected)),
+  );
   return fits <= FITS_BELOW && affine - fits >= BETTER_BY ? share : null;
 }

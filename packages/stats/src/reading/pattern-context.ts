@@ -24,11 +24,10 @@ export interface PatternContext {
   readonly line: { readonly a: number; readonly b: number };
   /** z of production's share at each baseline quantile. */
   readonly z: readonly number[];
-  /** Largest rank error of both sides together. */
-  readonly rankError: number;
+  /** Envelope of the rank error of both sides together. */
+  readonly rankErrorAt: (rank: number) => number;
 }
 
-/** Null where the baseline has no spread to measure by. */
 export function patternContext(
   baseline: CdfView,
   production: CdfView,
@@ -40,7 +39,7 @@ export function patternContext(
   const x = GRID_RANKS.map((rank) => normal(quantileOf(baseline, rank)));
   const y = GRID_RANKS.map((rank) => normal(quantileOf(production, rank)));
   const effective = effectiveEvents(baseline.n, production.n, designEffect);
-  const rankError = baseline.rankErrorAt(0.5) + production.rankErrorAt(0.5);
+  const rankErrorAt = (rank: number) => Math.hypot(baseline.rankErrorAt(rank), production.rankErrorAt(rank));
   return {
     baseline,
     production,
@@ -53,17 +52,23 @@ export function patternContext(
     line: lineOf(x, y),
     z: GRID_RANKS.map((rank) => {
       const value = quantileOf(baseline, rank);
-      return zBetween(middleShare(production, value), middleShare(baseline, value), effective);
+      const expected = middleShare(baseline, value);
+      return zBetween(middleShare(production, value), expected, effective, rankErrorAt(expected));
     }),
-    rankError,
+    rankErrorAt,
   };
 }
 
-/** Signed-root deviance of two shares, kept off 0 and 1. */
-export function zBetween(observed: number, expected: number, effective: number): number {
+/** The rank error of a sketch has a standard deviation of half its envelope at most. */
+export const ENVELOPE_DEVIATIONS = 2;
+
+/** Signed-root deviance of two shares, kept off 0 and 1; a rank error adds its variance to that of the share. */
+export function zBetween(observed: number, expected: number, effective: number, rankError: number): number {
   const least = 0.5 / (effective + 1);
   const e = Math.min(1 - least, Math.max(least, expected));
-  return signedRootDeviance(Math.min(1, Math.max(0, observed)), e, effective);
+  const z = signedRootDeviance(Math.min(1, Math.max(0, observed)), e, effective);
+  const variance = (e * (1 - e)) / effective;
+  return z / Math.sqrt(1 + (rankError / ENVELOPE_DEVIATIONS) ** 2 / variance);
 }
 
 /** Theil–Sen: the median of the slopes between pairs of ranks in the middle, and the median of what it leaves. */

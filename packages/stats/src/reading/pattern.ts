@@ -31,6 +31,8 @@ export interface Pattern {
   readonly figures: Readonly<Record<string, number>>;
   /** Name of the unit change, where it has one. */
   readonly name?: string;
+  /** A value that many events have on both sides and that the pattern leaves out. */
+  readonly apartFrom?: number;
 }
 
 /** Looks for one pattern; null where it is not there. */

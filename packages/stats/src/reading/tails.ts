@@ -6,6 +6,8 @@ import { type PatternContext, zBetween } from "./pattern-context.js";
 const RANKS = [0.95, 0.98, 0.99, 0.995, 0.999] as const;
 const LEAST_EXPECTED = 4;
 const CRITICAL = 4.2;
+/** Beside a tail that left the line, less is needed of the other one to say that both did. */
+const CRITICAL_BESIDE = 3.2;
 const HEAVIER = 1.4;
 const LIGHTER = 0.6;
 /** A median that moved this far beside one tail is the whole moving, not the tail. */
@@ -20,9 +22,11 @@ interface TailFound {
 
 /** One tail, or both, left the line that the middle lies on. */
 export function tailRule(context: PatternContext): Pattern | null {
-  const upper = tailOf(context, "upper");
-  const lower = tailOf(context, "lower");
-  if (upper === null && lower === null) return null;
+  const strong = { upper: tailOf(context, "upper", CRITICAL), lower: tailOf(context, "lower", CRITICAL) };
+  const first = strong.upper ?? strong.lower;
+  if (first === null) return null;
+  const upper = strong.upper ?? beside(first, tailOf(context, "upper", CRITICAL_BESIDE));
+  const lower = strong.lower ?? beside(first, tailOf(context, "lower", CRITICAL_BESIDE));
   const both = upper !== null && lower !== null;
   if (!both && Math.abs(medianShift(context)) >= MOVED) return null;
   const told = upper ?? lower!;
@@ -37,13 +41,18 @@ export function tailRule(context: PatternContext): Pattern | null {
   };
 }
 
+/** The weaker tail counts where it went the same way: both heavier or both lighter. */
+function beside(first: TailFound, other: TailFound | null): TailFound | null {
+  return other !== null && first.ratio > 1 === other.ratio > 1 ? other : null;
+}
+
 /** By how many robust standard deviations the median moved. */
 export function medianShift({ x, y }: PatternContext): number {
   const middle = x.length >> 1;
   return y[middle]! - x[middle]!;
 }
 
-function tailOf(context: PatternContext, side: "upper" | "lower"): TailFound | null {
+function tailOf(context: PatternContext, side: "upper" | "lower", critical: number): TailFound | null {
   const { baseline, production, median, scale, line, effective, m } = context;
   let found: TailFound | null = null;
   for (const rank of RANKS) {
@@ -56,9 +65,9 @@ function tailOf(context: PatternContext, side: "upper" | "lower"): TailFound | n
     const expected = side === "upper" ? 1 - before.upTo / baseline.n : before.below / baseline.n;
     const observed = side === "upper" ? 1 - upTo / production.n : below / production.n;
     if (expected <= 0) continue;
-    const z = zBetween(observed, expected, effective);
+    const z = zBetween(observed, expected, effective, context.rankErrorAt(at));
     const ratio = observed / expected;
-    if (Math.abs(z) < CRITICAL || (ratio < HEAVIER && ratio > LIGHTER)) continue;
+    if (Math.abs(z) < critical || (ratio < HEAVIER && ratio > LIGHTER)) continue;
     if (found === null || Math.abs(z) > Math.abs(found.z)) found = { rank: at, ratio, z, threshold: fitted };
   }
   return found;

@@ -1,6 +1,9 @@
+import { eventsAt } from "../events-at.js";
+import { GRID_RANKS } from "../grid-ranks.js";
+import { quantileOf } from "../quantile-of.js";
 import { wasserstein1 } from "../wasserstein1.js";
 import type { Pattern } from "./pattern.js";
-import type { PatternContext } from "./pattern-context.js";
+import { type PatternContext, zBetween } from "./pattern-context.js";
 import { mirroredView, scaledView } from "./view-shape.js";
 
 interface UnitChange {
@@ -37,6 +40,7 @@ const CHANGES: readonly UnitChange[] = [
 const SLOPE_SLACK = 0.04;
 const FIT = 0.03;
 const BETTER = 4;
+const RANKS_FIT = 3.7;
 const LEAST_UNIT_DISTANCE = 0.25;
 const LEAST_FLIP_DISTANCE = 0.3;
 
@@ -52,11 +56,26 @@ export function unitRule(context: PatternContext): Pattern | null {
     const fit = wasserstein1(changed, production) / (change.factor * scale);
     if (fit < (best?.fit ?? Number.POSITIVE_INFINITY)) best = { ...change, fit };
   }
-  if (best === null || best.fit > FIT + 2.2 / Math.sqrt(m)) return null;
+  if (best === null) return null;
+  const fits = best.fit <= FIT + 2.2 / Math.sqrt(m) || largestLeft(context, best) < RANKS_FIT;
+  if (!fits) return null;
   // The distance in production's own unit, so that a change to a smaller unit is measured alike.
   if (distance / Math.max(1, best.factor) < BETTER * best.fit && distance < BETTER * best.fit) return null;
   const { factor, offset, name } = best;
   return { kind: "unit change", figures: { factor, offset }, name };
+}
+
+/** Largest |z| over the grid between production and the baseline so changed: W1 of a heavy tail is chance for the most part, ranks are not. */
+function largestLeft(context: PatternContext, { factor, offset }: UnitChange): number {
+  const { baseline, production, effective, rankErrorAt } = context;
+  return Math.max(
+    ...GRID_RANKS.map((rank) => {
+      const value = quantileOf(baseline, rank);
+      const expected = eventsAt(baseline, value).upTo / baseline.n;
+      const observed = eventsAt(production, factor * value + offset).upTo / production.n;
+      return Math.abs(zBetween(observed, expected, effective, rankErrorAt(rank)));
+    }),
+  );
 }
 
 /** Production is the baseline with its sign turned. */

@@ -17,6 +17,26 @@ export function heaviestAtoms(view: CdfView, most: number): readonly Atom[] {
   return atoms.sort((a, b) => b.share - a.share || a.value - b.value).slice(0, most);
 }
 
+/** Values that make up a lattice at most, and their least share. */
+const LATTICE_VALUES = 32;
+const LATTICE_COVERED = 0.5;
+
+/** Whether values repeat as those of counts, ratings and rounded readings do: most of what is not the heaviest value, which may be a default. */
+export function isLattice(view: CdfView): boolean {
+  const [heaviest, ...others] = heaviestAtoms(view, LATTICE_VALUES);
+  if (heaviest === undefined) return false;
+  const covered = others.reduce((sum, { share }) => sum + share, 0);
+  return covered > 0 && covered >= LATTICE_COVERED * (1 - heaviest.share);
+}
+
+const FEW_VALUES = 7;
+const FEW_COVER = 0.99;
+
+/** Whether a handful of values is nearly all there is. */
+export function isFewValued(view: CdfView): boolean {
+  return heaviestAtoms(view, FEW_VALUES).reduce((sum, { share }) => sum + share, 0) >= FEW_COVER;
+}
+
 /** Share of the events that have a value exactly. */
 export function shareAt(view: CdfView, value: number): number {
   const { below, upTo } = eventsAt(view, value);
