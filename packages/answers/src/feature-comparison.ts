@@ -1,6 +1,9 @@
+import type { Dependence } from "@moorline/baseline";
 import {
   compareNumeric,
   compareVerdict,
+  DEFAULT_DECISION_RULE,
+  designEffectAt,
   type NumericComparison,
   type NumericSide,
   type QuantilePair,
@@ -22,6 +25,8 @@ export interface FeatureComparison extends CompanionStatistics {
   /** What the comparison amounts to, with what its pattern amounts to where there is one. */
   readonly reading: string;
   readonly pattern: Reading;
+  /** What dependence between events does to band, p-values and intervals; null: nothing is known of it, events are taken as independent. */
+  readonly dependence: ToldDependence | null;
   readonly n: NumericComparison["n"];
   readonly missing: NumericComparison["missing"];
   readonly ks: NumericComparison["ks"];
@@ -36,17 +41,31 @@ export interface FeatureComparison extends CompanionStatistics {
   readonly shift: readonly ShiftPoint[];
 }
 
+export interface ToldDependence {
+  /** What it was learnt from: the baseline's blocks by time or in the order of its rows. */
+  readonly basis: "time" | "rows";
+  /** By how much it inflates the variance of a share, at three ranks. */
+  readonly designEffect: { readonly p1: number; readonly p50: number; readonly p99: number };
+}
+
+export interface CompareFeatureOptions {
+  readonly unit?: string | null;
+  readonly dependence?: Dependence | null;
+}
+
 /** Two sides of one feature, compared and judged without a time axis. */
 export function compareFeature(
   feature: string,
   slice: string,
   baseline: NumericSide,
   production: NumericSide,
-  unit: string | null = null,
+  { unit = null, dependence = null }: CompareFeatureOptions = {},
 ): FeatureComparison {
-  const comparison = compareNumeric(baseline, production);
-  const { state, sentence } = compareVerdict(comparison);
-  const pattern = readPattern(baseline, production, { unit });
+  const designEffect = dependence?.designEffect ?? 1;
+  const middle = designEffectAt(designEffect, 0.5);
+  const comparison = compareNumeric(baseline, production, { designEffect });
+  const { state, sentence } = compareVerdict(comparison, DEFAULT_DECISION_RULE, designEffect);
+  const pattern = readPattern(baseline, production, { unit, designEffect: middle });
   const { n, missing, ks, wasserstein, tails, tailRanks, psi, jensenShannon, pairs } = comparison;
   return {
     feature,
@@ -55,6 +74,7 @@ export function compareFeature(
     state,
     reading: withPattern(state, sentence, pattern),
     pattern,
+    dependence: dependenceTold(dependence),
     n,
     missing,
     ks,
@@ -63,10 +83,16 @@ export function compareFeature(
     tailRanks,
     psi,
     jensenShannon,
-    ...companionStatistics(baseline, production),
+    ...companionStatistics(baseline, production, middle),
     pairs,
     shift: shiftFunction(pairs),
   };
+}
+
+function dependenceTold(dependence: Dependence | null): ToldDependence | null {
+  if (dependence === null || dependence.basis === "assumed") return null;
+  const at = (rank: number) => designEffectAt(dependence.designEffect, rank);
+  return { basis: dependence.basis, designEffect: { p1: at(0.01), p50: at(0.5), p99: at(0.99) } };
 }
 
 /** A pattern is told of what is off; where all holds, or too little is known, it would be one word too many. */
@@ -79,4 +105,4 @@ function withPattern(
   return isOff && !UNTOLD.has(kind) ? `${sentence}. The pairs read: ${pattern}` : sentence;
 }
 
-const UNTOLD: ReadonlySet<Reading["kind"]> = new Set(["none", "thin", "cannot tell", "shape"]);
+const UNTOLD: ReadonlySet<Reading["kind"]> = new Set(["none", "thin", "cannot tell"]);

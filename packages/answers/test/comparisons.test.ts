@@ -39,6 +39,61 @@ describe("compareFeature(feature, slice, baseline, production)", () => {
   });
 });
 
+describe("the reading of compareFeature", () => {
+  const wave = (length: number, of: (x: number) => number) =>
+    numericSideOf(
+      sequence(length, (i) => of(20 + 5 * Math.sqrt(-2 * Math.log((i + 0.5) / length)) * Math.cos(2.4 * i))),
+    );
+  const baseline = wave(8_000, (x) => x);
+
+  it("is the verdict, then the pattern in the feature's unit where something is off", () => {
+    const compared = compareFeature(
+      "temp",
+      "all",
+      baseline,
+      wave(3_000, (x) => 1.8 * x + 32),
+      "°C",
+    );
+    expect(compared).toMatchObject({
+      state: "adrift",
+      pattern: { kind: "unit change", figures: { factor: 1.8, offset: 32 } },
+    });
+    const [verdict, pattern] = compared.reading.split(". The pairs read: ");
+    expect(verdict).not.toBe("");
+    expect(pattern).toBe(compared.pattern.sentence);
+    expect(pattern).toContain(
+      "1.8 times the baseline's plus 32, as when degrees Celsius become degrees Fahrenheit",
+    );
+  });
+
+  it("is the verdict alone where all holds or too little is known; the pattern stands in its own field", () => {
+    const holding = compareFeature(
+      "temp",
+      "all",
+      baseline,
+      wave(3_000, (x) => x),
+      "°C",
+    );
+    expect([holding.state, holding.pattern.kind, holding.reading.includes("The pairs read")]).toEqual([
+      "holding",
+      "none",
+      false,
+    ]);
+    const thin = compareFeature(
+      "temp",
+      "all",
+      baseline,
+      wave(3, (x) => x),
+      "°C",
+    );
+    expect([thin.state, thin.pattern.kind, thin.reading.includes("The pairs read")]).toEqual([
+      "thin",
+      "thin",
+      false,
+    ]);
+  });
+});
+
 describe("compareCategoryFeature(feature, slice, baseline, production)", () => {
   it("lists at most 20 new and vanished categories and 10 movers, and says how many there are", () => {
     const names = (prefix: string, count: number) =>

@@ -58,7 +58,7 @@ const WORDS: Readonly<Record<PatternKind, Words>> = {
   clipped: ({ figures }, sides) =>
     `values are clipped at ${value(figures["value"]!, sides.unit)}: ${percentInWords(figures["share"]!)} (${shareInterval(figures["share"]!, sides)}) are exactly that and none lies ${side(figures)} it, where the baseline has ${percentInWords(figures["beyond"]!)}`,
   "unit change": ({ figures, name }) =>
-    `looks like another unit (${name}): values are ${factorInWords(figures["factor"]!)}${offsetInWords(figures["offset"]!)}`,
+    `looks like another unit: values are ${factorInWords(figures["factor"]!)}${offsetInWords(figures["offset"]!)}, as when ${name}`,
   "sign flip": () => "the sign is turned: production is the baseline times −1",
   "default-fill": ({ figures }, sides) =>
     `${percentInWords(figures["share"]!)} of values (${shareInterval(figures["share"]!, sides)}) are exactly ${value(figures["value"]!, sides.unit)}, as a filled-in default would be; the baseline has ${percentInWords(figures["before"]!)}`,

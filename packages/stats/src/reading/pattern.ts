@@ -29,7 +29,7 @@ export interface Pattern {
   readonly kind: PatternKind;
   /** In the feature's unit, shares and factors; plain finite numbers. */
   readonly figures: Readonly<Record<string, number>>;
-  /** Name of the unit change, where it has one. */
+  /** What becomes what in a change of unit. */
   readonly name?: string;
   /** A value that many events have on both sides and that the pattern leaves out. */
   readonly apartFrom?: number;

@@ -9,31 +9,38 @@ import { mirroredView, scaledView } from "./view-shape.js";
 interface UnitChange {
   readonly factor: number;
   readonly offset: number;
+  /** What becomes what. */
   readonly name: string;
 }
 
-/** Pairs of units that people mix up (common practice, no source), both ways. */
+/** Factors between units that people mix up (common practice, no source): what becomes what where values grow, and where they shrink. */
+const FACTORS: readonly (readonly [factor: number, grows: string, shrinks: string])[] = [
+  [1_000, "kilograms become grams", "grams become kilograms"],
+  [
+    100,
+    "fractions become percents, or metres centimetres",
+    "percents become fractions, or centimetres metres",
+  ],
+  [10, "centimetres become millimetres", "millimetres become centimetres"],
+  [60, "minutes become seconds, or hours minutes", "seconds become minutes, or minutes hours"],
+  [3_600, "hours become seconds", "seconds become hours"],
+  [1_024, "kibibytes become bytes", "bytes become kibibytes"],
+  [1e6, "seconds become microseconds", "microseconds become seconds"],
+  [2.54, "inches become centimetres", "centimetres become inches"],
+  [1.609344, "miles become kilometres", "kilometres become miles"],
+  [2.20462, "kilograms become pounds", "pounds become kilograms"],
+  [3.28084, "metres become feet", "feet become metres"],
+];
+
 const CHANGES: readonly UnitChange[] = [
-  ...[
-    [1_000, "thousandths", "thousands"],
-    [100, "hundredths", "hundreds, or percent as fractions"],
-    [10, "tenths", "tens"],
-    [60, "seconds for minutes, or minutes for hours", "minutes for seconds, or hours for minutes"],
-    [3_600, "seconds for hours", "hours for seconds"],
-    [1_024, "bytes for kibibytes", "kibibytes for bytes"],
-    [1e6, "millionths", "millions"],
-    [2.54, "centimetres for inches", "inches for centimetres"],
-    [1.609344, "kilometres for miles", "miles for kilometres"],
-    [2.20462, "pounds for kilograms", "kilograms for pounds"],
-    [3.28084, "feet for metres", "metres for feet"],
-  ].flatMap(([factor, larger, smaller]) => [
-    { factor: factor as number, offset: 0, name: larger as string },
-    { factor: 1 / (factor as number), offset: 0, name: smaller as string },
+  ...FACTORS.flatMap(([factor, grows, shrinks]) => [
+    { factor, offset: 0, name: grows },
+    { factor: 1 / factor, offset: 0, name: shrinks },
   ]),
-  { factor: 1.8, offset: 32, name: "degrees Fahrenheit for degrees Celsius" },
-  { factor: 1 / 1.8, offset: -32 / 1.8, name: "degrees Celsius for degrees Fahrenheit" },
-  { factor: 1, offset: 273.15, name: "kelvin for degrees Celsius" },
-  { factor: 1, offset: -273.15, name: "degrees Celsius for kelvin" },
+  { factor: 1.8, offset: 32, name: "degrees Celsius become degrees Fahrenheit" },
+  { factor: 1 / 1.8, offset: -32 / 1.8, name: "degrees Fahrenheit become degrees Celsius" },
+  { factor: 1, offset: 273.15, name: "degrees Celsius become kelvin" },
+  { factor: 1, offset: -273.15, name: "kelvin become degrees Celsius" },
 ];
 
 /** How near the slope must come to a factor, how near the changed baseline to production, and how much nearer than before. */

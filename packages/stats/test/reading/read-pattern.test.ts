@@ -75,19 +75,19 @@ describe("readPattern(baseline, production, options)", () => {
       name: "Fahrenheit",
       change: (x: number) => 1.8 * x + 32,
       kind: "unit change",
-      says: /degrees Fahrenheit for degrees Celsius\): values are 1\.8 times the baseline's plus 32;/,
+      says: /^looks like another unit: values are 1\.8 times the baseline's plus 32, as when degrees Celsius become degrees Fahrenheit;/,
     },
     {
       name: "thousandths",
       change: (x: number) => 1_000 * x,
       kind: "unit change",
-      says: /^looks like another unit \(thousandths\): values are 1,000 times the baseline's;/,
+      says: /^looks like another unit: values are 1,000 times the baseline's, as when kilograms become grams;/,
     },
     {
       name: "tens",
       change: (x: number) => x / 10,
       kind: "unit change",
-      says: /values are the baseline's divided by 10/,
+      says: /values are the baseline's divided by 10, as when millimetres become centimetres;/,
     },
     { name: "a turned sign", change: (x: number) => -x, kind: "sign flip", says: /^the sign is turned/ },
     {
