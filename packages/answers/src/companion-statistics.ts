@@ -27,13 +27,21 @@ export interface CompanionStatistics {
 }
 
 /** The companions of a numeric comparison. */
-export function companionStatistics(baseline: NumericSide, production: NumericSide): CompanionStatistics {
-  return { ...ofValues(baseline, production), missingChange: missingChangeOf(baseline, production) };
+export function companionStatistics(
+  baseline: NumericSide,
+  production: NumericSide,
+  designEffect: number,
+): CompanionStatistics {
+  return {
+    ...ofValues(baseline, production, designEffect),
+    missingChange: missingChangeOf(baseline, production, designEffect),
+  };
 }
 
 function ofValues(
   { cdf: baseline }: NumericSide,
   { cdf: production }: NumericSide,
+  designEffect: number,
 ): Omit<CompanionStatistics, "missingChange"> {
   if (baseline.n === 0 || production.n === 0) {
     return {
@@ -44,14 +52,19 @@ function ofValues(
       jensenShannonNoise: null,
     };
   }
-  const level = { bins: decileBins(baseline, production).length, n: baseline.n, m: production.n };
-  const { noise, aboveNoise, interval } = wassersteinChange(baseline, production);
+  const level = {
+    bins: decileBins(baseline, production).length,
+    n: baseline.n,
+    m: production.n,
+    designEffect,
+  };
+  const { noise, aboveNoise, interval } = wassersteinChange(baseline, production, { designEffect });
   return {
-    andersonDarling: andersonDarling(baseline, production),
+    andersonDarling: andersonDarling(baseline, production, { designEffect }),
     wassersteinNoise: { noise, aboveNoise, interval },
     wassersteinTails: {
-      lower: wassersteinChange(baseline, production, { range: TAIL_RANGES.lower }),
-      upper: wassersteinChange(baseline, production, { range: TAIL_RANGES.upper }),
+      lower: wassersteinChange(baseline, production, { range: TAIL_RANGES.lower, designEffect }),
+      upper: wassersteinChange(baseline, production, { range: TAIL_RANGES.upper, designEffect }),
     },
     psiNoise: populationStabilityNoise(level),
     jensenShannonNoise: jensenShannonNoise(level),
@@ -61,9 +74,13 @@ function ofValues(
 function missingChangeOf(
   baseline: NumericSide,
   production: NumericSide,
+  designEffect: number,
 ): CompanionStatistics["missingChange"] {
   if (baseline.events === 0 || production.events === 0) return null;
   const before = { events: baseline.missing, trials: baseline.events };
   const now = { events: production.missing, trials: production.events };
-  return { ...rateChange(before, now), pValue: rateChangePValue(before, now) };
+  return {
+    ...rateChange(before, now, { designEffect }),
+    pValue: rateChangePValue(before, now, designEffect),
+  };
 }

@@ -1,4 +1,4 @@
-import { loadBaselineSide, sideOfSketch } from "@moorline/baseline";
+import { findHeldFeature, type HeldFeature, loadHeldFeature, sideOfSketch } from "@moorline/baseline";
 import type { FeatureConfig, StreamConfig } from "@moorline/config";
 import { NumericSketch } from "@moorline/sketch";
 import type { NumericSide } from "@moorline/stats";
@@ -46,8 +46,11 @@ export async function readPairs(request: PairsRequest): Promise<PairsAnswer> {
   const closedThroughMs = progress?.closedThroughMs ?? 0;
   const production = await rangeOf(request, request.range, closedThroughMs);
   const held = await heldAgainst(request, closedThroughMs);
+  const side = sideOf(production);
+  const rangeMs = production.toMs - production.fromMs;
+  const dependence = held.feature?.dependence(rangeMs, side.cdf.n) ?? null;
   return {
-    ...compareFeature(feature.name, slice, held.side, sideOf(production), feature.unit),
+    ...compareFeature(feature.name, slice, held.side, side, { unit: feature.unit, dependence }),
     stream: stream.name,
     unit: feature.unit,
     window: isoRange(production),
@@ -60,17 +63,34 @@ export async function readPairs(request: PairsRequest): Promise<PairsAnswer> {
 
 interface HeldAgainst extends Pick<PairsAnswer, "baseline" | "against" | "amended"> {
   readonly side: NumericSide;
+  /** The baseline that dependence is known from: also where another range stands in its place; null without one. */
+  readonly feature: HeldFeature | null;
 }
 
 async function heldAgainst(request: PairsRequest, closedThroughMs: number): Promise<HeldAgainst> {
   const { store, feature, slice, against } = request;
   if (against !== null) {
     const range = await rangeOf(request, against, closedThroughMs);
-    return { side: sideOf(range), baseline: null, against: isoRange(range), amended: range.amended };
+    const active = await store.baselines.active(request.stream.name);
+    const known =
+      active === null ? null : await findHeldFeature(store, active.baselineId, slice, feature.name);
+    return {
+      side: sideOf(range),
+      feature: known?.held ?? null,
+      baseline: null,
+      against: isoRange(range),
+      amended: range.amended,
+    };
   }
   const id = await activeBaselineId(store, request.stream, request.baseline);
-  const found = await loadBaselineSide(store, id, slice, feature.name);
-  return { side: found.side, baseline: { id, slice: found.slice }, against: null, amended: false };
+  const { held, slice: heldSlice } = await loadHeldFeature(store, id, slice, feature.name);
+  return {
+    side: held.side,
+    feature: held,
+    baseline: { id, slice: heldSlice },
+    against: null,
+    amended: false,
+  };
 }
 
 function rangeOf(request: PairsRequest, range: TimeRange, closedThroughMs: number): Promise<RangeSketch> {

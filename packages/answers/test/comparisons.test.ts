@@ -52,7 +52,7 @@ describe("the reading of compareFeature", () => {
       "all",
       baseline,
       wave(3_000, (x) => 1.8 * x + 32),
-      "°C",
+      { unit: "°C" },
     );
     expect(compared).toMatchObject({
       state: "adrift",
@@ -72,7 +72,7 @@ describe("the reading of compareFeature", () => {
       "all",
       baseline,
       wave(3_000, (x) => x),
-      "°C",
+      { unit: "°C" },
     );
     expect([holding.state, holding.pattern.kind, holding.reading.includes("The pairs read")]).toEqual([
       "holding",
@@ -84,7 +84,7 @@ describe("the reading of compareFeature", () => {
       "all",
       baseline,
       wave(3, (x) => x),
-      "°C",
+      { unit: "°C" },
     );
     expect([thin.state, thin.pattern.kind, thin.reading.includes("The pairs read")]).toEqual([
       "thin",

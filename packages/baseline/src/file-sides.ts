@@ -7,7 +7,7 @@ import { matchColumn } from "./files/match-column.js";
 import { type BoundColumn, RowTable } from "./files/row-table.js";
 import { sqlText } from "./files/sql-text.js";
 import { findTrainingFiles, type TrainingFiles } from "./files/training-files.js";
-import { sideOfSketch } from "./load-baseline-side.js";
+import { sideOfSketch } from "./part-side.js";
 import type { OnProgress } from "./read-progress.js";
 
 /** Rows up to which a file's values are compared as they are; beyond, through a sketch of this compression. */

@@ -2,6 +2,7 @@ import {
   type BlockCounts,
   type DecisionGround,
   type DecisionRule,
+  FROZEN_RANKS,
   learnSway,
   NO_REPLAY,
   type NumericSide,
@@ -11,10 +12,28 @@ import {
   type Sway,
   sideCounts,
   Tolerance,
+  type ToleranceBasis,
 } from "@moorline/stats";
 import type { BaselinePart } from "@moorline/store";
 import { decodeBlockCounts } from "./block-counts-codec.js";
-import { sideOfPart } from "./load-baseline-side.js";
+import { sideOfPart } from "./part-side.js";
+
+/** What dependence between events does to a comparison. */
+export interface Dependence {
+  /** What it was learnt from; `assumed`: nothing, events are taken as independent. */
+  readonly basis: ToleranceBasis;
+  readonly designEffect: (rank: number) => number;
+}
+
+/** Index of the frozen rank that lies nearest, on the scale on which tails are told apart. */
+function nearestFrozen(rank: number): number {
+  const logit = (p: number) => Math.log(p / (1 - p));
+  const at = logit(Math.min(1 - 1e-6, Math.max(1e-6, rank)));
+  let best = 0;
+  for (const [index, frozen] of FROZEN_RANKS.entries())
+    if (Math.abs(logit(frozen) - at) < Math.abs(logit(FROZEN_RANKS[best]!) - at)) best = index;
+  return best;
+}
 
 /** One feature and slice of a baseline, as windows are held against it: the whole, and how it varies from block to block. */
 export class HeldFeature {
@@ -59,6 +78,18 @@ export class HeldFeature {
       replay: () => this.#replay(tolerance, rule),
       thresholds: this.counts.thresholds,
     };
+  }
+
+  /**
+   * By how much dependence inflates the variance of a share of so many values that lie in a range of so long a time, by rank; held against the whole
+   * baseline, not against its hours.
+   */
+  dependence(rangeMs: number, values: number): Dependence {
+    const { sway } = this;
+    const plain = sway === null ? null : { ...sway, seasonal: null };
+    const tolerance = new Tolerance({ baseline: this.counts, sway: plain, windowMs: rangeMs });
+    const at = (rank: number) => tolerance.designEffect(nearestFrozen(rank), 1, values);
+    return { basis: tolerance.basis, designEffect: at };
   }
 
   #replay(tolerance: Tolerance, rule: DecisionRule): Replay {

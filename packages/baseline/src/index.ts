@@ -20,9 +20,9 @@ export { buildWindowBaseline, type WindowBaselineRequest } from "./build-window-
 export { type ComparedColumns, FileSides } from "./file-sides.js";
 export type { ColumnKind, FileColumn } from "./files/file-columns.js";
 export { findBaseline } from "./find-baseline.js";
-export { HeldFeature } from "./held-feature.js";
-export { type BaselineSide, loadBaselineSide, sideOfPart, sideOfSketch } from "./load-baseline-side.js";
-export { type HeldSlice, loadHeldFeature } from "./load-held-feature.js";
+export { type Dependence, HeldFeature } from "./held-feature.js";
+export { findHeldFeature, type HeldSlice, loadHeldFeature } from "./load-held-feature.js";
+export { sideOfPart, sideOfSketch } from "./part-side.js";
 export type { OnProgress, ReadProgress } from "./read-progress.js";
 export { LEAST_SLICE_ROWS } from "./slice-plan.js";
 export { streamRule } from "./stream-rule.js";

@@ -9,6 +9,22 @@ export interface HeldSlice {
   readonly slice: string;
 }
 
+/** The same, or null when the baseline has nothing of the feature. */
+export async function findHeldFeature(
+  store: Store,
+  id: string,
+  slice: string,
+  feature: string,
+): Promise<HeldSlice | null> {
+  for (const from of slice === "all" ? ["all"] : [slice, "all"]) {
+    const [whole] = await store.baselines.parts(id, { slice: from, feature, block: WHOLE });
+    if (whole === undefined) continue;
+    const [blocks] = await store.baselines.parts(id, { slice: from, feature, block: BLOCK_COUNTS });
+    return { held: new HeldFeature(whole, blocks ?? null, id), slice: from };
+  }
+  return null;
+}
+
 /**
  * One feature and slice of a baseline with how it varies from block to block.
  *
@@ -20,11 +36,7 @@ export async function loadHeldFeature(
   slice: string,
   feature: string,
 ): Promise<HeldSlice> {
-  for (const from of slice === "all" ? ["all"] : [slice, "all"]) {
-    const [whole] = await store.baselines.parts(id, { slice: from, feature, block: WHOLE });
-    if (whole === undefined) continue;
-    const [blocks] = await store.baselines.parts(id, { slice: from, feature, block: BLOCK_COUNTS });
-    return { held: new HeldFeature(whole, blocks ?? null, id), slice: from };
-  }
-  throw new MoorlineError("MOORLINE_STATE_BASELINE_PART", { id, feature });
+  const found = await findHeldFeature(store, id, slice, feature);
+  if (found === null) throw new MoorlineError("MOORLINE_STATE_BASELINE_PART", { id, feature });
+  return found;
 }

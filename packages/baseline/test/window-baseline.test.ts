@@ -8,7 +8,7 @@ import {
   type BuiltBaseline,
   buildWindowBaseline,
   findBaseline,
-  loadBaselineSide,
+  loadHeldFeature,
 } from "../src/index.js";
 import { folder, randomOf, sampleStream } from "./sample-rows.js";
 
@@ -118,8 +118,9 @@ describe("buildWindowBaseline", () => {
     expect(await store.baselines.put(built.record, built.parts)).toBe(true);
     const { id } = built.record;
     for (const slice of ["all", "depot=north"]) {
-      const { side, fallsBack } = await loadBaselineSide(store, id, slice, "cargo_temp");
-      expect([side.thresholdCounts, fallsBack]).toEqual([null, false]);
+      const found = await loadHeldFeature(store, id, slice, "cargo_temp");
+      const { side } = found.held;
+      expect([side.thresholdCounts, found.slice]).toEqual([null, slice]);
       const named = manifestOfBuilt(built).thresholds.find(
         (t) => t.slice === slice && t.feature === "cargo_temp",
       );
@@ -140,19 +141,36 @@ describe("buildWindowBaseline", () => {
   });
 });
 
-describe("loadBaselineSide", () => {
+describe("loadHeldFeature", () => {
   it("falls back to all, and says so, for a slice without a part of its own", async () => {
     const built = await buildWindowBaseline(request());
     await store.baselines.put(built.record, built.parts);
-    const all = await loadBaselineSide(store, built.record.id, "all", "doors");
-    const rare = await loadBaselineSide(store, built.record.id, "depot=rare", "doors");
-    expect([rare.slice, rare.fallsBack]).toEqual(["all", true]);
-    expect(rare.side.events).toBe(all.side.events);
+    const all = await loadHeldFeature(store, built.record.id, "all", "doors");
+    const rare = await loadHeldFeature(store, built.record.id, "depot=rare", "doors");
+    expect(rare.slice).toBe("all");
+    expect(rare.held.side.events).toBe(all.held.side.events);
+  });
+
+  it("gives the sway of the panes, and by how much dependence inflates a range of values", async () => {
+    const built = await buildWindowBaseline(request());
+    await store.baselines.put(built.record, built.parts);
+    const { held } = await loadHeldFeature(store, built.record.id, "all", "cargo_temp");
+    expect(held.sway).toMatchObject({ basis: "time", blocks: PANES, lengthMs: MINUTE, seasonal: null });
+    const { basis, designEffect } = held.dependence(5 * MINUTE, 5 * EVENTS_IN_PANE);
+    expect(basis).toBe("time");
+    // Independent values: an upper limit of 1 from twelve stretches of five panes.
+    for (const rank of [0.001, 0.3, 0.5, 0.99]) {
+      expect(designEffect(rank)).toBeGreaterThanOrEqual(1);
+      expect(designEffect(rank)).toBeLessThan(5);
+    }
+    // Twice the values in the same time: the excess counts twice.
+    const twice = held.dependence(5 * MINUTE, 10 * EVENTS_IN_PANE).designEffect(0.5);
+    expect(twice).toBeCloseTo(1 + 2 * (designEffect(0.5) - 1), 6);
   });
 
   it("says that a feature is not in the baseline", async () => {
     const built = await buildWindowBaseline(request());
-    await expect(loadBaselineSide(store, built.record.id, "all", "speed")).rejects.toThrow(
+    await expect(loadHeldFeature(store, built.record.id, "all", "speed")).rejects.toThrow(
       /holds nothing of feature speed/,
     );
   });

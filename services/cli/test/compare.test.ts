@@ -117,7 +117,7 @@ describe("moorline compare", () => {
     ]);
     const [feature] = numericOf(out);
     const keys =
-      "feature kind slice state reading pattern n missing ks wasserstein tails tailRanks psi jensenShannon andersonDarling wassersteinNoise wassersteinTails psiNoise jensenShannonNoise missingChange pairs shift";
+      "feature kind slice state reading pattern dependence n missing ks wasserstein tails tailRanks psi jensenShannon andersonDarling wassersteinNoise wassersteinTails psiNoise jensenShannonNoise missingChange pairs shift";
     expect(Object.keys(feature!)).toEqual(keys.split(" "));
     expect(Object.keys(feature!.ks!)).toEqual(["distance", "at", "direction", "pValue"]);
     expect(feature!.ks!.direction).toBe("below");

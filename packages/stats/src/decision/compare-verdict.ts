@@ -1,3 +1,4 @@
+import type { DesignEffect } from "../design-effect.js";
 import { BAND_CRITICAL, type BandConfidence } from "../deviance-band.js";
 import type { NumericComparison } from "../numeric-comparison.js";
 import { DEFAULT_DECISION_RULE, type DecisionRule } from "./decision-rule.js";
@@ -26,9 +27,10 @@ export interface Verdict {
 export function compareVerdict(
   comparison: NumericComparison,
   rule: DecisionRule = DEFAULT_DECISION_RULE,
+  designEffect?: DesignEffect,
 ): Verdict {
   const judged = watchedShares(comparison, FEWEST)
-    .map((share) => ({ share, ...standingOf(share, rule) }))
+    .map((share) => ({ share, ...standingOf(share, rule, designEffect) }))
     .sort(furthestFirst);
   const adrift = judged.find(({ floorPassed, z }) => floorPassed && leavesBand(z, 0.999));
   if (adrift) return verdictAt("adrift", adrift);

@@ -1,3 +1,4 @@
+import { type DesignEffect, designEffectAt } from "../design-effect.js";
 import { effectiveEvents } from "../effective-events.js";
 import { signedRootDeviance } from "../signed-root-deviance.js";
 import type { DecisionRule } from "./decision-rule.js";
@@ -12,9 +13,13 @@ export interface Standing {
   readonly floorPassed: boolean;
 }
 
+/** Missing values have no rank: the dependence of the middle stands for theirs. */
+const MISSING_AS = 0.5;
+
 /** Holds one watched share against its floor and computes its evidence. Source: docs/decision.md. */
-export function standingOf(share: WatchedShare, rule: DecisionRule, designEffect = 1): Standing {
-  const effective = effectiveEvents(share.baselineEvents, share.events, designEffect);
+export function standingOf(share: WatchedShare, rule: DecisionRule, designEffect?: DesignEffect): Standing {
+  const effect = designEffectAt(designEffect, share.rank ?? MISSING_AS);
+  const effective = effectiveEvents(share.baselineEvents, share.events, effect);
   const z = signedRootDeviance(share.proven, share.expected, effective);
   const { part, observed, expected, events } = share;
   return { z, floorPassed: passesFloor(part, observed, expected, events, rule) };

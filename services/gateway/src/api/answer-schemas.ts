@@ -115,6 +115,12 @@ export const pairsAnswer = z
       runnerUp: z.string().nullable(),
       figures: z.record(z.string(), z.number()),
     }),
+    dependence: z
+      .object({
+        basis: z.enum(["time", "rows"]),
+        designEffect: z.object({ p1: z.number(), p50: z.number(), p99: z.number() }),
+      })
+      .nullable(),
     window: range,
     baseline: z.object({ id: z.string(), slice: z.string() }).nullable(),
     against: range.nullable(),
