@@ -32,10 +32,10 @@ const LARGEST = 1e150;
  *
  * Definition  the first rule that matches, in a fixed order (docs/reading.md).
  * Shape       any two sides.
- * Edges       no value at all where events came → `all missing`; fewer than 50 effective events → `thin`; a constant baseline, or values beyond 1e150,
- *             → `cannot tell`, unless a value that came or vanished says it all. Never NaN; goes to JSON as it is.
- * Accuracy    measured on 16 kinds of simulated change: docs/reading.md.
- * Cost        some hundred microseconds.
+ * Edges       no value at all where events came → `all missing`; fewer than 50 effective events → `thin`; a constant baseline, values beyond 1e150 or
+ *             something that differs and has no name on little evidence → `cannot tell`. Never NaN; goes to JSON as it is.
+ * Accuracy    97.7 % right at m = 1,000 and 99.8 % at 5,000 over 16 kinds of simulated change (docs/reading.md); the sketches' rank error is in every z.
+ * Cost        0.05 to 1 ms.
  */
 export function readPattern(
   baseline: NumericSide,
