@@ -77,7 +77,7 @@ export { garwood, poissonTail } from "./rates/garwood.js";
 export { type RateChange, type RateChangeOptions, type RateCounts, rateChange } from "./rates/rate-change.js";
 export { rateChangePValue } from "./rates/rate-change-p-value.js";
 export { wilson } from "./rates/wilson.js";
-export type { PatternKind } from "./reading/pattern.js";
+export { PATTERN_KINDS, type PatternKind } from "./reading/pattern.js";
 export { type Reading, type ReadingOptions, readPattern } from "./reading/read-pattern.js";
 export { blindRanks } from "./sensitivity/blind-ranks.js";
 export type { ChangeName } from "./sensitivity/changes.js";

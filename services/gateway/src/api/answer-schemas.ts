@@ -1,3 +1,4 @@
+import { PATTERN_KINDS } from "@moorline/stats";
 import { z } from "./z.js";
 
 const time = z.string().openapi({ format: "date-time" });
@@ -110,9 +111,9 @@ export const pairsAnswer = z
     state,
     reading: z.string(),
     pattern: z.object({
-      kind: z.string(),
+      kind: z.enum(PATTERN_KINDS),
       sentence: z.string(),
-      runnerUp: z.string().nullable(),
+      runnerUp: z.enum(PATTERN_KINDS).nullable(),
       figures: z.record(z.string(), z.number()),
     }),
     dependence: z
