@@ -9,7 +9,7 @@ import {
 
 /** Index of the median among the watched shares: its dependence stands for that of the whole. */
 const MEDIAN = 5;
-const UNTOLD: ReadonlySet<Reading["kind"]> = new Set(["none", "thin", "cannot tell", "shape"]);
+const UNTOLD: ReadonlySet<Reading["kind"]> = new Set(["none", "thin", "cannot tell"]);
 
 /** What the pattern of a window amounts to, where it is off and the pattern has a name; null else. */
 export function patternOf(

@@ -18,9 +18,9 @@ export const EMPTY_HISTORY: WindowHistory = Object.freeze({ windows: 0, lastEndM
 
 /** Longest scale, in windows; a longer horizon sees what lasts longer. */
 export const LONGEST_SCALE = 64;
-/** Levels that the scales 1, 2, 4 … 64 read from: each scale is four rows long, but for 1 and 2. */
-const LEVELS = 5;
-const ROWS_A_BLOCK = 4;
+/** Levels that the scales 1, 2, 4 … 64 read from: each block is eight rows long, or as many as it has windows. */
+const LEVELS = 4;
+const ROWS_A_BLOCK = 8;
 
 /** Columns of a row: events, missing, finite, the eleven counts, those below the lowest threshold; for a seasonal feature the expected counts too. */
 export const COLUMN = { events: 0, missing: 1, finite: 2, hits: 3, belowLowest: 14, expected: 15 } as const;
@@ -113,9 +113,9 @@ export function blockSums(
   return sums;
 }
 
-/** Level that a scale's rows stand in: the scales 1, 2 and 4 read single windows. */
+/** Level that a scale's rows stand in: the scales up to 8 read single windows. */
 function levelOf(scale: number): number {
-  return Math.max(0, 29 - Math.clz32(scale));
+  return Math.max(0, 28 - Math.clz32(scale));
 }
 
 /** By number of blocks and width; there are two or three of them. */

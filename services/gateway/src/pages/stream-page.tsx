@@ -4,7 +4,7 @@ import type { FeatureRow } from "../answers/feature-rows.js";
 import type { StreamSummary } from "../answers/stream-summary.js";
 import { featurePath, streamPath } from "./links.js";
 import { StateMark } from "./state-mark.js";
-import { ratioText, timeText } from "./words.js";
+import { ratioText, timeText, verdictText } from "./words.js";
 
 /** The features of a stream for one slice: one row a feature, with the horizon on which it is worst. */
 export function StreamSection({
@@ -141,7 +141,7 @@ function FeatureTable({ stream, rows, slice }: FeatureTableProps): VNode {
             <td>
               <StateMark state={row.state} /> <span class="faint">{row.horizon}</span>
             </td>
-            <td class="reading-cell">{row.reading}</td>
+            <td class="reading-cell">{verdictText(row.reading)}</td>
             <td class="number" data-label="Lower tail">
               {ratioText(row.tailRatio.lower)}
             </td>
