@@ -69,6 +69,15 @@ export { type WassersteinChangeOptions, wassersteinError } from "./noise/wassers
 export { TAIL_RANGES, type WassersteinNoiseInput, wassersteinNoise } from "./noise/wasserstein-noise.js";
 export type { BothSides, ComparedNumeric, NumericComparison, ThinNumeric } from "./numeric-comparison.js";
 export { type NumericSide, numericSideOf, type ThresholdCounts } from "./numeric-side.js";
+export {
+  type BreakPoint,
+  findBreak,
+  findOnset,
+  type Onset,
+  type OnsetAnswer,
+  type OnsetInput,
+  type OnsetWindow,
+} from "./onset/find-onset.js";
 export { jensenShannonDistance, populationStabilityIndex } from "./population-stability.js";
 export { quantileOf } from "./quantile-of.js";
 export { type QuantilePair, type QuantilePairsOptions, quantilePairs } from "./quantile-pairs.js";
@@ -89,6 +98,19 @@ export {
 } from "./sensitivity/sensitivity.js";
 export { type ShiftPoint, shiftFunction } from "./shift-function/shift-function.js";
 export { signedRootDeviance } from "./signed-root-deviance.js";
+export {
+  type SliceAnswer,
+  type SliceContribution,
+  type SliceOptions,
+  sliceContributions,
+} from "./slices/slice-contributions.js";
+export {
+  type DistanceSplit,
+  type SlicePart,
+  type SliceSides,
+  splitDistance,
+} from "./slices/split-distance.js";
+export { type ExceedanceSplit, splitExceedance } from "./slices/split-exceedance.js";
 export { chiSquareExceededBy, chiSquareTail } from "./special/chi-square.js";
 export {
   type GammaTails,

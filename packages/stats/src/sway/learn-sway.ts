@@ -79,7 +79,9 @@ function wholeEffects(blocks: BlockCounts, share: number, expected: number): Des
       span,
     });
     const { ratio, runs } = variance!;
-    const corrected = runs > 1 ? (ratio * runs) / (runs - 1) : 0;
+    // Around their own mean runs vary less than around the true share: by the part of the whole that one of them is.
+    const count = blocks.events.length;
+    const corrected = runs > 1 ? (ratio * count) / (count - span) : 0;
     measured.push({ span, ratio: corrected, degrees: degreesOf(corrected, runs, days, measured[0]) });
   }
   return designEffects(measured);
