@@ -50,6 +50,55 @@ async function problemOf(response: Response): Promise<{ status: number; detail: 
   return problem;
 }
 
+describe("slices", () => {
+  it("names the slice that carries the change, and its parts sum to the distance", async () => {
+    const answer = (await (await get(`${FEATURE}/slices?${RANGE}`)).json()) as {
+      distance: number;
+      sentence: string;
+      slices: { slice: string; wasserstein: { within: number; mix: number } }[];
+    };
+    expect(answer).toMatchObject({ key: "depot", unit: "°C", caution: expect.stringContaining("not proof") });
+    expect(answer.slices.map(({ slice }) => slice).toSorted()).toEqual(["depot=north", "depot=south"]);
+    const sum = answer.slices.reduce(
+      (total, { wasserstein }) => total + wasserstein.within + wasserstein.mix,
+      0,
+    );
+    expect(sum).toBeCloseTo(answer.distance, 9);
+    expect(answer.slices[0]!.slice).toBe("depot=north");
+    expect(answer.sentence).toMatch(/^depot=north carries /);
+  });
+
+  it("refuses a key that the stream has not", async () => {
+    const problem = await problemOf(await get(`${FEATURE}/slices?${RANGE}&key=carrier`));
+    expect(problem).toMatchObject({
+      status: 400,
+      detail: expect.stringContaining("carrier is none of depot"),
+    });
+  });
+});
+
+describe("onset", () => {
+  it("says since when, or why nothing is found, over the range or the last day", async () => {
+    const north = (await (await get(`${FEATURE}/onset?${RANGE}&slice=depot%3Dnorth`)).json()) as Record<
+      string,
+      unknown
+    >;
+    // A tenth of the values lies far above in every pane: the change is as old as the range, or older.
+    expect(north).toMatchObject({
+      found: true,
+      interval: { earlier: true },
+      windows: PANES,
+      windowMs: PANE_MS,
+    });
+    expect(north["sentence"]).toMatch(
+      /^since 2026-01-05 1\d:\d\d at the latest, perhaps before the range UTC: /,
+    );
+    const all = (await (await get(`${FEATURE}/onset`)).json()) as Record<string, unknown>;
+    expect(all).toMatchObject({ found: false, at: null, interval: null });
+    expect(all["sentence"]).toMatch(/no lasting change|too few windows/);
+  });
+});
+
 describe("sensitivity", () => {
   it("tells the smallest changes that page, with what they rest on, and a caution", async () => {
     const answer = (await (
@@ -289,6 +338,8 @@ describe("/v1/openapi.json", () => {
       "/v1/streams/{stream}/features": `/v1/streams/${STREAM}/features`,
       "/v1/streams/{stream}/sensitivity": `/v1/streams/${STREAM}/sensitivity`,
       "/v1/streams/{stream}/features/{feature}/quantile-pairs": `${FEATURE}/quantile-pairs?${RANGE}`,
+      "/v1/streams/{stream}/features/{feature}/slices": `${FEATURE}/slices?${RANGE}`,
+      "/v1/streams/{stream}/features/{feature}/onset": `${FEATURE}/onset?${RANGE}`,
       "/v1/streams/{stream}/features/{feature}/timeline": `${FEATURE}/timeline?${RANGE}`,
       "/v1/streams/{stream}/baselines": `/v1/streams/${STREAM}/baselines`,
       "/v1/baselines/{id}": `/v1/baselines/${BASELINE_ID}`,

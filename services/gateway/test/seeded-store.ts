@@ -66,7 +66,15 @@ async function seedBaseline(store: Store): Promise<void> {
     createdAtMs: START_MS - 1,
     createdBy: "a test",
     note: "invented",
-    manifest: { thresholds },
+    manifest: {
+      format: 1,
+      thresholds,
+      slices: [
+        { slice: "all", rows: 5_000 },
+        { slice: "depot=south", rows: 3_000 },
+      ],
+      leftOutSlices: [{ slice: "depot=north", rows: 2_000 }],
+    },
   };
   const parts = ["cargo_temp", HOSTILE].map((feature) => ({
     slice: "all",

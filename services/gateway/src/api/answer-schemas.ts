@@ -161,6 +161,52 @@ export const pairsAnswer = z
   })
   .loose();
 
+const part = z.object({ within: z.number(), mix: z.number() });
+
+export const slices = z.object({
+  stream: z.string(),
+  feature: z.string(),
+  unit: z.string().nullable(),
+  key: z.string().nullable(),
+  window: range,
+  baseline: z.object({ id: z.string() }),
+  distance: z.number(),
+  exceedanceChange: z.object({ lower: z.number(), upper: z.number() }),
+  critical: z.number(),
+  slices: z.array(
+    z.object({
+      slice: z.string(),
+      n: both(z.number()),
+      weight: both(z.number()),
+      wasserstein: part,
+      share: maybe,
+      exceedance: z.object({ lower: part, upper: part }),
+      z: maybe,
+      trafficZ: z.number(),
+    }),
+  ),
+  sentence: z.string(),
+  caution: z.string(),
+});
+
+export const onset = z.object({
+  stream: z.string(),
+  feature: z.string(),
+  slice: z.string(),
+  window: range,
+  baseline: z.object({ id: z.string(), slice: z.string() }),
+  windowMs: z.number(),
+  windows: z.number(),
+  found: z.boolean(),
+  at: time.nullable(),
+  interval: z.object({ from: time, to: time, earlier: z.boolean() }).nullable(),
+  rank: maybe,
+  expected: maybe,
+  observed: maybe,
+  sentence: z.string(),
+  caution: z.string(),
+});
+
 export const sensitivity = z.object({
   stream: z.string(),
   slice: z.string(),

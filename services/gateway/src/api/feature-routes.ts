@@ -1,4 +1,6 @@
-import { type PairsAnswer, readPairs } from "@moorline/answers";
+import { type PairsAnswer, readOnset, readPairs, readSlices } from "@moorline/answers";
+import type { StreamConfig } from "@moorline/config";
+import { MoorlineError } from "@moorline/errors";
 import { qqPlotSvg } from "@moorline/figures";
 import { pairsRequest } from "../answers/pairs-request.js";
 import { plotData } from "../answers/plot-data.js";
@@ -7,7 +9,7 @@ import { featureOf, streamOf } from "../gateway-context.js";
 import { csvText } from "../http/csv.js";
 import * as answers from "./answer-schemas.js";
 import { CAUTION } from "./caution.js";
-import { featureParams, pairsQuery, timelineQuery } from "./query-schemas.js";
+import { featureParams, onsetQuery, pairsQuery, slicesQuery, timelineQuery } from "./query-schemas.js";
 import { json, route } from "./route.js";
 
 const DAY_MS = 86_400_000;
@@ -35,6 +37,37 @@ export const FEATURE_ROUTES = [
   }),
   route({
     method: "get",
+    path: "/v1/streams/{stream}/features/{feature}/slices",
+    summary: "Which slice carries the change of a range: parts of the Wasserstein distance that sum to it",
+    params: featureParams,
+    query: slicesQuery,
+    answer: answers.slices,
+    types: ["application/json"],
+    handle: async (context, { params, query }) => {
+      const stream = streamOf(context, params.stream);
+      const { key, ...rest } = query;
+      const request = await pairsRequest(context, stream, params.feature, rest);
+      return json({ ...(await readSlices({ ...request, key: keyOf(stream, key) })), caution: CAUTION });
+    },
+  }),
+  route({
+    method: "get",
+    path: "/v1/streams/{stream}/features/{feature}/onset",
+    summary: "Since when a feature is different from its baseline, with an interval",
+    params: featureParams,
+    query: onsetQuery,
+    answer: answers.onset,
+    types: ["application/json"],
+    handle: async (context, { params, query }) => {
+      const stream = streamOf(context, params.stream);
+      const isGiven = query.from !== undefined || query.to !== undefined;
+      const request = await pairsRequest(context, stream, params.feature, query);
+      const answer = await readOnset({ ...request, range: isGiven ? request.range : null });
+      return json({ ...answer, caution: CAUTION });
+    },
+  }),
+  route({
+    method: "get",
     path: "/v1/streams/{stream}/features/{feature}/timeline",
     summary: "Every evaluated window of a range with its figures and state",
     params: featureParams,
@@ -57,6 +90,14 @@ export const FEATURE_ROUTES = [
     },
   }),
 ];
+
+/** @throws MOORLINE_INPUT_QUERY when the stream has no such slice key */
+function keyOf(stream: StreamConfig, key: string | undefined): string | null {
+  if (key === undefined) return null;
+  if (stream.slices.some((one) => one.key === key)) return key;
+  const keys = stream.slices.map((one) => one.key).join(", ");
+  throw new MoorlineError("MOORLINE_INPUT_QUERY", { reason: `key ${key} is none of ${keys || "none"}` });
+}
 
 /** One row a pair; what it was computed from stands in every row, so that a row torn out of the table still says it. */
 function pairsCsv(answer: PairsAnswer): string {

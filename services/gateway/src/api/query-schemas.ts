@@ -66,6 +66,21 @@ export const pairsQuery = z.object({
     .openapi({ description: "Another range of production in place of the baseline, FROM..TO" }),
 });
 
+export const slicesQuery = z.object({
+  from: timePoint.optional(),
+  to: timePoint.optional(),
+  horizon: name.optional().openapi({ description: "Without from and to: the last window of this horizon" }),
+  key: name.optional().openapi({ description: "Slice key; default: the stream's first", example: "depot" }),
+  baseline: name.optional(),
+});
+
+export const onsetQuery = z.object({
+  from: timePoint.optional(),
+  to: timePoint.optional().openapi({ description: "Without from and to: the last day that is closed" }),
+  slice: slice.optional(),
+  baseline: name.optional(),
+});
+
 export const timelineQuery = z.object({
   from: timePoint.optional(),
   to: timePoint.optional(),

@@ -7,15 +7,23 @@ import { featurePath, pairsPath } from "./links.js";
 import { StateMark } from "./state-mark.js";
 import { percentText, ratioText, timeText } from "./words.js";
 
+export interface WhereAndWhen {
+  readonly onset: string;
+  /** Null for a stream without slices. */
+  readonly slices: string | null;
+}
+
 export interface FeaturePageProps {
   readonly answer: PairsAnswer;
   /** Where the feature stands on each horizon, for the slice shown. */
   readonly rows: readonly FeatureRow[];
   readonly slices: readonly string[];
+  /** Null where another range stands in place of the baseline. */
+  readonly told: WhereAndWhen | null;
 }
 
 /** One feature: its states, its Q-Q plot over a range, and the pairs as a table. */
-export function FeatureContent({ answer, rows, slices }: FeaturePageProps): VNode {
+export function FeatureContent({ answer, rows, slices, told }: FeaturePageProps): VNode {
   const { stream, feature, slice } = answer;
   const range = {
     from: answer.window.from,
@@ -27,6 +35,8 @@ export function FeatureContent({ answer, rows, slices }: FeaturePageProps): VNod
       <h1>{`${feature}${answer.unit === null ? "" : ` (${answer.unit})`}`}</h1>
       <p class="faint">{`of ${stream}, slice ${slice}, ${rangeText(answer.window)}${answer.amended ? ", amended by late events" : ""}`}</p>
       <p class="reading">{answer.reading}</p>
+      {told === null ? null : <p>{`Since when: ${told.onset}.`}</p>}
+      {told === null || told.slices === null ? null : <p>{`Which slice: ${told.slices}.`}</p>}
       <div class="plot">
         <QqPlot data={plotData(answer)} />
       </div>

@@ -1,14 +1,15 @@
 import { createHash } from "node:crypto";
-import { readPairs } from "@moorline/answers";
+import { readOnset, readPairs, readSlices } from "@moorline/answers";
+import type { StreamConfig } from "@moorline/config";
 import { isMoorlineError, MoorlineError } from "@moorline/errors";
 import { type NextFunction, type Request, type Response, Router } from "express";
 import type { VNode } from "preact";
 import { featureRows } from "../answers/feature-rows.js";
-import { pairsRequest } from "../answers/pairs-request.js";
+import { type PairsQuery, pairsRequest } from "../answers/pairs-request.js";
 import { streamSummary } from "../answers/stream-summary.js";
 import { pairsQuery } from "../api/query-schemas.js";
 import { featureOf, type GatewayContext, streamOf } from "../gateway-context.js";
-import { FeatureContent } from "./feature-page.js";
+import { FeatureContent, type WhereAndWhen } from "./feature-page.js";
 import { pageHtml } from "./page-frame.js";
 import { PAGE_ICON, PAGE_SCRIPT, PAGE_STYLE } from "./page-style.js";
 import { StreamSection } from "./stream-page.js";
@@ -105,7 +106,24 @@ async function featurePage(context: GatewayContext, request: Request) {
     context.store.panes.slices(stream.name),
   ]);
   const own = rows.filter((row) => row.feature === name);
-  return { title: name, content: <FeatureContent answer={answer} rows={own} slices={slices} /> };
+  const told = answer.baseline === null ? null : await whereAndWhen(context, stream, name, query);
+  return { title: name, content: <FeatureContent answer={answer} rows={own} slices={slices} told={told} /> };
+}
+
+/** Since when the feature is different, and which slice carries it, in words. */
+async function whereAndWhen(
+  context: GatewayContext,
+  stream: StreamConfig,
+  name: string,
+  query: PairsQuery,
+): Promise<WhereAndWhen> {
+  const request = await pairsRequest(context, stream, name, query);
+  const isGiven = query.from !== undefined;
+  const [onset, slices] = await Promise.all([
+    readOnset({ ...request, range: isGiven ? request.range : null }),
+    stream.slices.length === 0 ? null : readSlices({ ...request, key: null }),
+  ]);
+  return { onset: onset.sentence, slices: slices?.sentence ?? null };
 }
 
 /** @throws MOORLINE_INPUT_QUERY */
