@@ -21,10 +21,6 @@ export interface Sway {
   readonly lengthMs: number | null;
   /** By watched share: events of a block, on average over the blocks that have any. */
   readonly meanTotals: readonly number[];
-  /** By watched share: expected over the whole baseline. */
-  readonly expected: readonly number[];
-  /** By watched share: events of the whole baseline. */
-  readonly totals: readonly number[];
   /** By watched share, around the expected share of the whole baseline. */
   readonly effects: readonly DesignEffects[];
   /** Where the feature follows the hour of the day more than its blocks vary around that; else null. */
@@ -60,8 +56,6 @@ export function learnSway(blocks: BlockCounts): Sway | null {
     blocks: blocks.events.length,
     lengthMs: blocks.lengthMs,
     meanTotals: totals.map((total) => total / used),
-    expected,
-    totals,
     effects,
     seasonal: seasonalOf(blocks, effects),
   };
