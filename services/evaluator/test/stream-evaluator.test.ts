@@ -1,4 +1,6 @@
+import { streamRule } from "@moorline/baseline";
 import { NumericSketch } from "@moorline/sketch";
+import { criticalZ } from "@moorline/stats";
 import { afterEach, beforeEach, describe, expect, it } from "vitest";
 import { BASELINE_ID, EvaluatedStore, MINUTE, START, TRAINING } from "./evaluated-store.js";
 
@@ -101,6 +103,34 @@ describe("StreamEvaluator", () => {
       n: { production: 2_500 },
     });
     expect(entry?.sentence).toContain("upper tail heavier");
+    // Why it paged, in numbers: what was seen, how strong it is, and what was needed for this stream's number of windows.
+    const rule = streamRule(at.config.streams[0]!, 2);
+    expect(entry?.detail).toMatchObject({
+      why: {
+        // The test's baseline has no blocks.
+        tolerance: { basis: "assumed", seasonal: false },
+        needed: { adrift: rule.zPage, straining: rule.zPage - 1 },
+        evidence: { designEffect: 1, baselineItself: 0 },
+      },
+      rule: { zPage: rule.zPage, persistence: 3 },
+      place: { part: "upper tail" },
+    });
+    const { evidence } = (
+      entry!.detail as { why: { evidence: { z: number; observed: number; expected: number } } }
+    ).why;
+    expect(Math.abs(evidence.z)).toBeGreaterThanOrEqual(rule.zPage);
+    expect(entry?.sentence).toContain("its events were taken as independent");
+  });
+
+  it("asks for more evidence the more windows a stream decides", () => {
+    const stream = at.config.streams[0]!;
+    const [few, many] = [streamRule(stream, 1), streamRule(stream, 400)];
+    // One feature, 8,640 + 720 windows a month; 512 times as many.
+    expect(few.zPage).toBeCloseTo(criticalZ(9_360), 12);
+    expect(many.zPage).toBeCloseTo(criticalZ(512 * 9_360), 12);
+    expect(streamRule(stream, 300).zPage).toBe(many.zPage);
+    const tried = { persistence: 5, releaseAfter: 2, bodyFloor: 0.1, tailFactor: 3 };
+    expect(streamRule(stream, 1, tried)).toMatchObject(tried);
   });
 
   it("amends late panes without a change of state, in hours and evaluations too", async () => {
