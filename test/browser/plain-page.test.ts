@@ -94,7 +94,12 @@ describe("the plain page", () => {
     };
     expect(await page.locator(".reading").textContent()).toBe(answer.reading);
     const drawn = answer.pairs.filter((pair) => pair.production !== null).length;
-    expect(await page.locator("svg .mark").count()).toBe(drawn);
+    // The Q-Q plot, and the shift function under it.
+    for (const plot of [0, 1])
+      expect(await page.locator(".plot").nth(plot).locator("svg .mark").count()).toBe(drawn);
+    const told = await page.locator("main, body").first().textContent();
+    expect(told).toMatch(/Since when: /);
+    expect(told).toMatch(/Which slice: /);
     expect(faults).toEqual([]);
   });
 
