@@ -89,9 +89,11 @@ function pValueOf(
 
 /** The KS distance is decided in the body, at a rank not known beforehand: the largest effect there is the safe one. */
 function largestInBody(effect: DesignEffect | undefined): number {
-  const body = FROZEN_RANKS.filter((rank) => partOfRank(rank) === "body");
-  return Math.max(...body.map((rank) => designEffectAt(effect, rank)));
+  if (typeof effect !== "function") return designEffectAt(effect, 0.5);
+  return Math.max(...BODY_RANKS.map((rank) => designEffectAt(effect, rank)));
 }
+
+const BODY_RANKS = FROZEN_RANKS.filter((rank) => partOfRank(rank) === "body");
 
 const HEADLINE_RANKS = { lower: [0.01, 0.05, 0.1, 0.25], upper: [0.99, 0.95, 0.9, 0.75] } as const;
 
