@@ -150,7 +150,7 @@ function HorizonTable({ stream, feature, slice, rows }: HorizonTableProps): VNod
                 <StateMark state={row.state} />
               </td>
               <td>{timeText(row.since)}</td>
-              <td>{row.reading}</td>
+              <td class="told">{row.reading}</td>
             </tr>
           ))}
         </tbody>

@@ -21,6 +21,7 @@ caption { text-align: left; color: var(--faint); padding: 0.3rem 0; }
 th, td { text-align: left; vertical-align: top; padding: 0.45rem 0.9rem 0.45rem 0; border-bottom: 1px solid var(--rule); }
 th { font-weight: 600; white-space: nowrap; }
 td.number, th.number { text-align: right; white-space: nowrap; }
+td.told { min-width: 16rem; }
 td.name { overflow-wrap: anywhere; min-width: 9.5rem; max-width: 20rem; }
 .state { white-space: nowrap; } .state svg { width: 0.9em; height: 0.9em; vertical-align: -0.05em; margin-right: 0.35em; fill: none; stroke: var(--ink); stroke-width: 2; }
 .state-adrift { font-weight: 700; color: var(--strong); } .state-adrift svg { fill: var(--strong); stroke: var(--strong); }
